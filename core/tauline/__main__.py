@@ -1,0 +1,7 @@
+"""``python -m tauline``."""
+
+import sys
+
+from tauline.cli import main
+
+sys.exit(main())

@@ -1,0 +1,17 @@
+"""Worldlines: one kind per file behind the protocol :class:`Worldline`."""
+
+from tauline.worldlines.acceleration import ConstantAcceleration
+from tauline.worldlines.chain import Chain, Leg, chain, legs_of
+from tauline.worldlines.coast import Coast
+from tauline.worldlines.protocol import Side, Worldline
+
+__all__ = [
+    "Chain",
+    "Coast",
+    "ConstantAcceleration",
+    "Leg",
+    "Side",
+    "Worldline",
+    "chain",
+    "legs_of",
+]
