@@ -126,7 +126,8 @@ def _roots(quadratic: Coefficients) -> list[float]:
 
 def _tau_of(leg: Leg, z: float) -> float:
     a = leg.proper_acceleration
-    if 1.0 + a * z <= 0.0:
+    if 1.0 + a * z <= ROUNDING:
+        # the factor 1 + a z that cleared the fraction has a zero of its own, which is no meeting
         return math.nan
     tau = math.log1p(a * z) / a if a else z
     if math.isfinite(tau):

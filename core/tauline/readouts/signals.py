@@ -5,6 +5,8 @@ from __future__ import annotations
 import math
 from collections.abc import Iterator
 
+import msgspec
+
 from tauline.readouts.pairs import coordinates, pair_readouts
 from tauline.readouts.readout import Readout, readout
 from tauline.resolve.results import FrameResult, PulsesResult, Resolved, SignalResult
@@ -61,13 +63,19 @@ def pulses_readouts(
 def _first_and_last(
     resolved: Resolved, pulses: PulsesResult, frame: FrameResult
 ) -> Iterator[Readout]:
-    for what, signal in (("first", pulses.signals[0]), ("last", pulses.signals[-1])):
-        for item in signal_readouts(resolved, signal, frame):
-            if item.symbol == "D":
-                yield Readout(
-                    name=f"Doppler factor, {what} pulse",
-                    symbol="D",
-                    number=item.number,
-                    unit="",
-                    working=item.working,
-                )
+    """Doppler factors of the first and the last pulse that travels at all."""
+    factors = (
+        item
+        for signal in pulses.signals
+        for item in signal_readouts(resolved, signal, frame)
+        if item.symbol == "D"
+    )
+    backwards = (
+        item
+        for signal in reversed(pulses.signals)
+        for item in signal_readouts(resolved, signal, frame)
+        if item.symbol == "D"
+    )
+    for what, item in (("first", next(factors, None)), ("last", next(backwards, None))):
+        if item is not None:
+            yield msgspec.structs.replace(item, name=f"Doppler factor, {what} pulse")

@@ -11,13 +11,36 @@ A class per form of an object; which form a table of the file has follows from i
 
 from __future__ import annotations
 
-from typing import Any, Literal
+from typing import Annotated, Any, Literal
 
 import msgspec
 
 from tauline.scenario.diagnosis import Diagnosis
+from tauline.scenario.units import ACCELERATION, LENGTH, NUMBER, TIME, VELOCITY, Dimension
 
 Value = float | str
+
+
+def _of(dimension: Dimension) -> msgspec.Meta:
+    return msgspec.Meta(extra={"dimension": dimension})
+
+
+def _id_of(*kinds: str) -> msgspec.Meta:
+    return msgspec.Meta(extra={"refers_to": kinds})
+
+
+# The types of fields: what a value measures, what an id refers to. Reading, editing and the JSON
+# Schema all follow from them.
+PureNumber = Annotated[Value, _of(NUMBER)]
+Time = Annotated[Value, _of(TIME)]
+Length = Annotated[Value, _of(LENGTH)]
+Speed = Annotated[Value, _of(VELOCITY)]
+Acceleration = Annotated[Value, _of(ACCELERATION)]
+FrameId = Annotated[str, _id_of("frame")]
+EventId = Annotated[str, _id_of("event")]
+WorldlineId = Annotated[str, _id_of("worldline")]
+PlaceId = Annotated[str, _id_of("event", "worldline")]
+
 Side = Literal["before", "after"]
 Direction = Literal["+x", "-x"]
 
@@ -33,10 +56,10 @@ class Velocity(msgspec.Struct, frozen=True, kw_only=True, omit_defaults=True):
     ``one_minus_beta`` keeps every digit of a speed very near that of light.
     """
 
-    velocity: Value | None = None
-    rapidity: Value | None = None
-    gamma: Value | None = None
-    one_minus_beta: Value | None = None
+    velocity: Speed | None = None
+    rapidity: PureNumber | None = None
+    gamma: PureNumber | None = None
+    one_minus_beta: PureNumber | None = None
     direction: Direction | None = None
 
 
@@ -47,18 +70,25 @@ class Named(msgspec.Struct, frozen=True, kw_only=True, omit_defaults=True):
     label: str = ""
 
 
+class NamedVelocity(Velocity, frozen=True, kw_only=True, omit_defaults=True):
+    """The same, for an object with a velocity (a struct has one base)."""
+
+    id: str
+    label: str = ""
+
+
 # --- frames -----------------------------------------------------------------------------------
 
 
-class Frame(Named, Velocity, frozen=True, kw_only=True, omit_defaults=True):
+class Frame(NamedVelocity, frozen=True, kw_only=True, omit_defaults=True):
     """An inertial frame moving along x relative to another one.
 
     A frame without a velocity and without ``relative_to`` names the base frame; a scenario has
     at most one such. ``origin`` is the event at t′ = x′ = 0 (default: that of the base frame).
     """
 
-    relative_to: str | None = None
-    origin: str | None = None
+    relative_to: FrameId | None = None
+    origin: EventId | None = None
 
 
 # --- worldlines -------------------------------------------------------------------------------
@@ -67,41 +97,40 @@ class Frame(Named, Velocity, frozen=True, kw_only=True, omit_defaults=True):
 class FrameTime(msgspec.Struct, frozen=True, kw_only=True, omit_defaults=True):
     """A time in a named frame (default: the base frame)."""
 
-    time: Value
-    frame: str | None = None
+    time: Time
+    frame: FrameId | None = None
 
 
-LineEnd = str | FrameTime
+LineEnd = EventId | FrameTime
 """Where a worldline starts or ends: at an event (its id) or at a time of a frame."""
 
 
 class Clock(msgspec.Struct, frozen=True, kw_only=True, omit_defaults=True):
     """The clock carried along a worldline shows ``reads`` at ``at``: an event, or ``start``."""
 
-    reads: Value
-    at: str = "start"
+    reads: Time
+    at: EventId = "start"
 
 
-class Line(Named, frozen=True, kw_only=True, omit_defaults=True):
-    """What every worldline has; the clock defaults to 0 at the start."""
+class RestLine(Named, frozen=True, kw_only=True, omit_defaults=True):
+    """At rest at place ``x`` of a frame; endless where no ``start`` or ``end`` is given.
+
+    As on every worldline, the clock counts from 0 at the start unless ``clock`` says otherwise.
+    """
 
     clock: Clock | None = None
-
-
-class RestLine(Line, frozen=True, kw_only=True, omit_defaults=True):
-    """At rest at place ``x`` of a frame; endless where no ``start`` or ``end`` is given."""
-
-    x: Value
-    frame: str | None = None
+    x: Length
+    frame: FrameId | None = None
     start: LineEnd | None = None
     end: LineEnd | None = None
 
 
-class CoastLine(Line, Velocity, frozen=True, kw_only=True, omit_defaults=True):
+class CoastLine(NamedVelocity, frozen=True, kw_only=True, omit_defaults=True):
     """Through an event at a velocity measured in ``frame``."""
 
-    through: str
-    frame: str | None = None
+    clock: Clock | None = None
+    through: EventId
+    frame: FrameId | None = None
     start: LineEnd | None = None
     end: LineEnd | None = None
 
@@ -114,12 +143,12 @@ class CoastUntil(msgspec.Struct, frozen=True, kw_only=True, omit_defaults=True):
     worldline.
     """
 
-    time: Value | None = None
-    x: Value | None = None
-    frame: str | None = None
-    proper_time: Value | None = None
-    event: str | None = None
-    meets: str | None = None
+    time: Time | None = None
+    x: Length | None = None
+    frame: FrameId | None = None
+    proper_time: Time | None = None
+    event: EventId | None = None
+    meets: WorldlineId | None = None
 
 
 class CoastLeg(Velocity, frozen=True, kw_only=True, omit_defaults=True):
@@ -130,16 +159,16 @@ class CoastLeg(Velocity, frozen=True, kw_only=True, omit_defaults=True):
     ``for`` and ``until`` the leg is endless, which only the last one may be.
     """
 
-    frame: str | None = None
-    duration: Value | None = msgspec.field(default=None, name="for")
+    frame: FrameId | None = None
+    duration: Time | None = msgspec.field(default=None, name="for")
     until: CoastUntil | None = None
 
 
 class SpeedUntil(Velocity, frozen=True, kw_only=True, omit_defaults=True):
     """An accelerated leg ends at this velocity in ``frame``, or at a reading of its clock."""
 
-    frame: str | None = None
-    proper_time: Value | None = None
+    frame: FrameId | None = None
+    proper_time: Time | None = None
 
 
 class AcceleratedLeg(msgspec.Struct, frozen=True, kw_only=True, omit_defaults=True):
@@ -149,15 +178,15 @@ class AcceleratedLeg(msgspec.Struct, frozen=True, kw_only=True, omit_defaults=Tr
     either it is endless, which only the last leg may be.
     """
 
-    acceleration: Value
-    duration: Value | None = msgspec.field(default=None, name="for")
+    acceleration: Acceleration
+    duration: Time | None = msgspec.field(default=None, name="for")
     until: SpeedUntil | None = None
 
 
 Leg = CoastLeg | AcceleratedLeg
 
 
-class Itinerary(Line, Velocity, frozen=True, kw_only=True, omit_defaults=True):
+class Itinerary(NamedVelocity, frozen=True, kw_only=True, omit_defaults=True):
     """Legs one after the other from the event ``start``.
 
     ``velocity`` (measured in ``frame``, which is also the default frame of the legs) is that at
@@ -165,8 +194,9 @@ class Itinerary(Line, Velocity, frozen=True, kw_only=True, omit_defaults=True):
     worldline reaches ``start`` from the endless past at that velocity.
     """
 
-    start: str
-    frame: str | None = None
+    clock: Clock | None = None
+    start: EventId
+    frame: FrameId | None = None
     endless_past: bool = False
     legs: tuple[Leg, ...] = msgspec.field(name="leg")
 
@@ -177,24 +207,24 @@ class Itinerary(Line, Velocity, frozen=True, kw_only=True, omit_defaults=True):
 class CoordinateEvent(Named, frozen=True, kw_only=True, omit_defaults=True):
     """At ``t``, ``x`` of a frame (default: the base frame)."""
 
-    t: Value
-    x: Value
-    frame: str | None = None
+    t: Time
+    x: Length
+    frame: FrameId | None = None
 
 
 class ClockEvent(Named, frozen=True, kw_only=True, omit_defaults=True):
     """On a worldline where its clock reads ``proper_time``."""
 
-    on: str
-    proper_time: Value
+    on: WorldlineId
+    proper_time: Time
 
 
 class FrameTimeEvent(Named, frozen=True, kw_only=True, omit_defaults=True):
     """On a worldline at ``time`` of a frame."""
 
-    on: str
-    time: Value
-    frame: str | None = None
+    on: WorldlineId
+    time: Time
+    frame: FrameId | None = None
 
 
 class MeetingEvent(Named, frozen=True, kw_only=True, omit_defaults=True):
@@ -204,9 +234,9 @@ class MeetingEvent(Named, frozen=True, kw_only=True, omit_defaults=True):
     those not later than the event ``after``, where given, are left out of the count.
     """
 
-    meeting: tuple[str, str]
+    meeting: tuple[WorldlineId, WorldlineId]
     which: int = 1
-    after: str | None = None
+    after: EventId | None = None
 
 
 class SimultaneousEvent(Named, frozen=True, kw_only=True, omit_defaults=True):
@@ -217,10 +247,10 @@ class SimultaneousEvent(Named, frozen=True, kw_only=True, omit_defaults=True):
     which of its two rest frames is meant.
     """
 
-    on: str
-    simultaneous_with: str
-    frame: str | None = None
-    observer: str | None = None
+    on: WorldlineId
+    simultaneous_with: EventId
+    frame: FrameId | None = None
+    observer: WorldlineId | None = None
     side: Side | None = None
 
 
@@ -236,8 +266,8 @@ class Signal(Named, frozen=True, kw_only=True, omit_defaults=True):
     Its ends are the events ``ID.sent`` and ``ID.received``.
     """
 
-    source: str = msgspec.field(name="from")
-    to: str | None = None
+    source: PlaceId = msgspec.field(name="from")
+    to: PlaceId | None = None
     direction: Direction | None = None
 
 
@@ -250,11 +280,11 @@ class Pulses(Named, frozen=True, kw_only=True, omit_defaults=True):
     ``ID.k.received``.
     """
 
-    source: str = msgspec.field(name="from")
-    to: str
-    every: Value
-    start: str | None = None
-    end: str | None = None
+    source: WorldlineId = msgspec.field(name="from")
+    to: WorldlineId
+    every: Time
+    start: EventId | None = None
+    end: EventId | None = None
     count: int | None = None
 
 
@@ -265,9 +295,9 @@ class Simultaneity(Named, frozen=True, kw_only=True, omit_defaults=True):
     :class:`SimultaneousEvent`.
     """
 
-    through: str
-    frame: str | None = None
-    observer: str | None = None
+    through: EventId
+    frame: FrameId | None = None
+    observer: WorldlineId | None = None
     side: Side | None = None
 
 
@@ -277,14 +307,14 @@ class Simultaneity(Named, frozen=True, kw_only=True, omit_defaults=True):
 class LightCone(Named, frozen=True, kw_only=True, omit_defaults=True):
     """The shaded light cone of an event (a ``[[region]]``)."""
 
-    light_cone: str
+    light_cone: EventId
     part: Literal["future", "past", "both"] = "both"
 
 
 class Body(Named, frozen=True, kw_only=True, omit_defaults=True):
     """A rod, a train, a shed: the sheet swept between two worldlines."""
 
-    between: tuple[str, str]
+    between: tuple[WorldlineId, WorldlineId]
 
 
 Layer = Literal["grid", "hyperbolas", "clock_ticks", "labels", "signals", "light_cones", "caption"]
@@ -298,12 +328,12 @@ class View(Named, frozen=True, kw_only=True, omit_defaults=True):
     ``grid`` and ``hyperbolas``); ``pivot`` the event kept in place while boosting.
     """
 
-    frame: str | None = None
-    t: tuple[Value, Value] | None = None
-    x: tuple[Value, Value] | None = None
-    axes: tuple[str, ...] = ()
+    frame: FrameId | None = None
+    t: tuple[Time, Time] | None = None
+    x: tuple[Length, Length] | None = None
+    axes: tuple[FrameId, ...] = ()
     layers: tuple[Layer, ...] = ("clock_ticks", "labels", "signals", "light_cones", "caption")
-    pivot: str | None = None
+    pivot: EventId | None = None
 
 
 class Broken(msgspec.Struct, frozen=True, kw_only=True):

@@ -1,0 +1,53 @@
+"""Spacetime as array functions: light-cone coordinates, boosts, intervals, rapidities, Doppler."""
+
+from tauline.spacetime.boost import boost, boost_along, rotate
+from tauline.spacetime.doppler import doppler_factor, doppler_factor_between
+from tauline.spacetime.interval import (
+    IntervalClass,
+    classify,
+    classify_many,
+    interval_squared,
+    order,
+    proper_distance,
+    proper_time,
+)
+from tauline.spacetime.lightcone import from_lightcone, to_lightcone
+from tauline.spacetime.rapidity import (
+    beta,
+    from_beta,
+    from_gamma,
+    from_gamma_minus_one,
+    from_one_minus_beta,
+    gamma,
+    gamma_minus_one,
+    one_minus_beta,
+)
+from tauline.spacetime.velocity import compose, compose_collinear, four_velocity
+
+__all__ = [
+    "IntervalClass",
+    "beta",
+    "boost",
+    "boost_along",
+    "classify",
+    "classify_many",
+    "compose",
+    "compose_collinear",
+    "doppler_factor",
+    "doppler_factor_between",
+    "four_velocity",
+    "from_beta",
+    "from_gamma",
+    "from_gamma_minus_one",
+    "from_lightcone",
+    "from_one_minus_beta",
+    "gamma",
+    "gamma_minus_one",
+    "interval_squared",
+    "one_minus_beta",
+    "order",
+    "proper_distance",
+    "proper_time",
+    "rotate",
+    "to_lightcone",
+]

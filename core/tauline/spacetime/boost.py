@@ -1,0 +1,74 @@
+"""Lorentz boosts and rotations of light-cone arrays.
+
+Passive: the result holds the same events as seen from a frame that moves with the given rapidity.
+Always boost from the source, never a boosted array again: roundings add up.
+"""
+
+from __future__ import annotations
+
+import numpy as np
+from numpy.typing import ArrayLike
+
+from tauline.spacetime.lightcone import Array, as_rows
+
+
+def boost(coordinates: ArrayLike, rapidity: ArrayLike) -> Array:
+    """See events from a frame that moves along +x with this rapidity.
+
+    u′ = u e^{φ}, v′ = v e^{−φ}, y and z unchanged (W. Rindler, *Relativity*, 2nd ed. (2006),
+    §2.8; section from memory). ``coordinates`` is ``(rows, *N)``; the rapidity broadcasts
+    against ``N``.
+
+    >>> boost([2.0, 8.0], 0.0).tolist()
+    [2.0, 8.0]
+    """
+    rows = as_rows(coordinates)
+    phi = np.asarray(rapidity, dtype=float)
+    u, v = rows[0] * np.exp(phi), rows[1] * np.exp(-phi)
+    result = np.empty((rows.shape[0], *np.shape(u)))
+    result[0], result[1] = u, v
+    result[2:] = np.broadcast_to(rows[2:], result[2:].shape)
+    return result
+
+
+def boost_along(coordinates: ArrayLike, rapidity: float, direction: ArrayLike) -> Array:
+    """See events from a frame that moves with this rapidity along any direction.
+
+    ``direction`` is a unit vector of as many components as there are dimensions of space; the
+    axes of the new frame are not turned against the old ones (a pure boost: J. D. Jackson,
+    *Classical Electrodynamics*, 3rd ed. (1999), eq. 11.19, from memory). ValueError unless the
+    direction has length 1 within 1e-12.
+    """
+    rows = as_rows(coordinates)
+    unit = np.asarray(direction, dtype=float)
+    if unit.shape != (rows.shape[0] - 1,):
+        raise ValueError(f"the direction must have {rows.shape[0] - 1} components")
+    if abs(float(unit @ unit) - 1.0) > 1e-12:
+        raise ValueError("the direction must be a unit vector")
+    if unit.size == 1:
+        return boost(rows, rapidity * unit[0])
+    time = 0.5 * (rows[0] + rows[1])
+    space = np.concatenate([0.5 * (rows[1:2] - rows[:1]), rows[2:]])
+    along = np.tensordot(unit, space, axes=1)
+    # on the light cone of the direction itself a boost is a product again
+    near, far = (time - along) * np.exp(rapidity), (time + along) * np.exp(-rapidity)
+    new_time, new_along = 0.5 * (near + far), 0.5 * (far - near)
+    moved = space + np.multiply.outer(unit, new_along - along)
+    return np.concatenate([(new_time - moved[0])[np.newaxis], (new_time + moved[0])[np.newaxis], moved[1:]])
+
+
+def rotate(coordinates: ArrayLike, rotation: ArrayLike) -> Array:
+    """Turn the axes of space: x′ = R x with an orthogonal matrix R ``(n, n)``.
+
+    ValueError unless R is orthogonal within 1e-12.
+    """
+    rows = as_rows(coordinates)
+    matrix = np.asarray(rotation, dtype=float)
+    size = rows.shape[0] - 1
+    if matrix.shape != (size, size) or not np.allclose(matrix @ matrix.T, np.eye(size), atol=1e-12):
+        raise ValueError(f"a rotation is an orthogonal {size}×{size} matrix")
+    time = 0.5 * (rows[0] + rows[1])
+    space = np.tensordot(
+        matrix, np.concatenate([0.5 * (rows[1:2] - rows[:1]), rows[2:]]), axes=1
+    )
+    return np.concatenate([(time - space[0])[np.newaxis], (time + space[0])[np.newaxis], space[1:]])
