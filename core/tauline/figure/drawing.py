@@ -8,6 +8,7 @@ belongs to ("" for none); ``hue`` is the index of its owner's colour, −1 for t
 
 from __future__ import annotations
 
+from collections.abc import Mapping
 from enum import StrEnum
 
 import msgspec
@@ -135,3 +136,5 @@ class Drawing(msgspec.Struct, frozen=True, kw_only=True):
     labels: tuple[Label, ...] = ()
     caption: tuple[Run, ...] = ()
     title: str = ""
+    choices: Mapping[tuple[str, str, str], int] = {}
+    """Which candidate place each label took, for the next drawing to keep it there."""

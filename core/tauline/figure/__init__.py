@@ -1,0 +1,1 @@
+"""From a resolved scenario and a view to a drawing."""

@@ -1,0 +1,280 @@
+"""(Resolved, view, scale, text metrics) → Drawing: the one picture all painters share."""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Iterator, Mapping, Sequence
+from itertools import chain
+
+import numpy as np
+
+from tauline.figure import strokes as parts
+from tauline.figure.axes import (
+    AxisText,
+    axes_of,
+    axis_strokes,
+    axis_texts,
+    grid_strokes,
+    hyperbola_strokes,
+)
+from tauline.figure.caption import caption
+from tauline.figure.drawing import Drawing, Fill, Label, Marker, Points, Role, Run, Stroke
+from tauline.figure.labels import (
+    LEADER_FROM,
+    Key,
+    Placed,
+    Request,
+    along_line,
+    around_point,
+    beside,
+    place_labels,
+    segments_of,
+)
+from tauline.figure.measure import TextMeasure
+from tauline.figure.strokes import Scene
+from tauline.figure.view import DiagramView
+from tauline.resolve.results import EventResult, Resolved, SignalResult
+
+_ToPage = Callable[[Points], Points]
+
+EVENT_GAP, AXIS_GAP, LINE_GAP = 5.0, 5.0, 4.0
+
+KEPT_OFF = frozenset(
+    (
+        Role.WORLDLINE,
+        Role.SIGNAL,
+        Role.SIMULTANEITY,
+        Role.FRAME_AXIS,
+        Role.OTHER_AXIS,
+        Role.LIGHT_CONE_EDGE,
+    )
+)
+"""Lines that labels keep off."""
+
+
+def diagram(
+    resolved: Resolved,
+    view: DiagramView,
+    scale: float,
+    measure: TextMeasure,
+    previous: Drawing | None = None,
+) -> Drawing:
+    """Draw a scenario.
+
+    ``scale`` is the printed size, in points, of a diagram unit. ``previous`` is the drawing shown
+    before, if any: labels stay in their places where these are still free.
+    """
+    scene = Scene(resolved, view, scale)
+    axes = [axis for frame in (view.frame, *view.axes) for axis in axes_of(scene, frame)]
+    own_axes = [axis for axis in axes if axis.primary]
+    fills, strokes = _behind(scene)
+    if "grid" in view.layers:
+        strokes += grid_strokes(scene, own_axes)
+    if "hyperbolas" in view.layers:
+        strokes += hyperbola_strokes(scene, own_axes)
+    for axis in reversed(axes):
+        strokes += axis_strokes(scene, axis)
+    strokes += _lines(scene)
+    markers = list(_markers(scene))
+    texts = [text for axis in axes for text in axis_texts(scene, axis)]
+    labels, leaders, choices = _labels(scene, texts, strokes, markers, measure, previous)
+    return Drawing(
+        window=view.window,
+        scale=scale,
+        fills=tuple(fills),
+        strokes=(*strokes, *leaders),
+        markers=tuple(markers),
+        labels=labels,
+        caption=caption(resolved, view) if "caption" in view.layers else (),
+        title=resolved.scenario.title,
+        choices=choices,
+    )
+
+
+def _behind(scene: Scene) -> tuple[list[Fill], list[Stroke]]:
+    fills: list[Fill] = []
+    strokes: list[Stroke] = []
+    if "light_cones" in scene.view.layers:
+        for cone in scene.resolved.light_cones.values():
+            shades, edges = parts.light_cone_parts(scene, cone)
+            fills += shades
+            strokes += edges
+    for body in scene.resolved.bodies.values():
+        fills += parts.body_fills(scene, body)
+    return fills, strokes
+
+
+def _lines(scene: Scene) -> Iterator[Stroke]:
+    for thing in scene.resolved.simultaneities.values():
+        yield from parts.simultaneity_strokes(scene, thing)
+    if "signals" in scene.view.layers:
+        for signal in signals_of(scene.resolved):
+            yield from parts.signal_strokes(scene, signal)
+    for line in scene.resolved.worldlines.values():
+        yield from parts.worldline_strokes(scene, line)
+
+
+def signals_of(resolved: Resolved) -> Iterator[SignalResult]:
+    """All signals, those of pulses too."""
+    groups = (group.signals for group in resolved.pulses.values())
+    return chain(resolved.signals.values(), chain.from_iterable(groups))
+
+
+def _markers(scene: Scene) -> Iterator[Marker]:
+    for line in scene.resolved.worldlines.values():
+        yield from parts.corner_markers(scene, line)
+    for event in scene.resolved.events.values():
+        if event.owner in scene.resolved.pulses:
+            continue
+        marker = parts.event_marker(scene, event)
+        if marker is not None:
+            yield marker
+
+
+def _labels(
+    scene: Scene,
+    texts: Sequence[AxisText],
+    strokes: Sequence[Stroke],
+    markers: Sequence[Marker],
+    measure: TextMeasure,
+    previous: Drawing | None,
+) -> tuple[tuple[Label, ...], list[Stroke], Mapping[Key, int]]:
+    w = scene.window
+    corner = np.array([w.x0, w.t0])
+
+    def on_page(points: Points) -> Points:
+        return (points - corner) * scene.scale
+
+    lines = [stroke for stroke in strokes if stroke.role in KEPT_OFF]
+    obstacles = segments_of(on_page(stroke.points) for stroke in lines)
+    dots = np.array(
+        [(*on_page(np.asarray(marker.at)), 3.5) for marker in markers]
+    ).reshape(-1, 3)
+    requests: list[Request] = []
+    if "labels" in scene.view.layers:
+        requests += _event_requests(scene, measure, on_page)
+        requests += _line_requests(scene, strokes, measure, on_page)
+    requests += _axis_requests(texts, measure, on_page)
+    requests.sort(key=lambda request: _ORDER[request.role])
+    placed = place_labels(
+        requests,
+        obstacles,
+        dots,
+        (w.width * scene.scale, w.height * scene.scale),
+        previous.choices if previous is not None else None,
+    )
+    labels = tuple(_label(item, corner, scene.scale) for item in placed)
+    leaders = [
+        leader for item in placed if (leader := _leader(item, corner, scene.scale)) is not None
+    ]
+    return labels, leaders, {item.request.key: item.choice for item in placed}
+
+
+_ORDER = {Role.AXIS_TITLE: 0, Role.EVENT_LABEL: 1, Role.LINE_LABEL: 2, Role.AXIS_NUMBER: 3}
+"""The most important first: numbers come last, since some can be spared."""
+
+
+def _event_requests(
+    scene: Scene, measure: TextMeasure, on_page: _ToPage
+) -> Iterator[Request]:
+    for event in scene.resolved.events.values():
+        place = scene.place(event.point)
+        if event.owner or not scene.holds(place):
+            continue
+        runs = (Run(_event_name(event)),)
+        size = measure.size(runs, Role.EVENT_LABEL)
+        at = on_page(place)
+        yield Request(
+            source=event.id,
+            role=Role.EVENT_LABEL,
+            hue=-1,
+            runs=runs,
+            size=size,
+            boxes=around_point(at, size, EVENT_GAP),
+            anchors=at,
+        )
+
+
+def _event_name(event: EventResult) -> str:
+    return event.label or event.id
+
+
+def _line_requests(
+    scene: Scene, strokes: Sequence[Stroke], measure: TextMeasure, on_page: _ToPage
+) -> Iterator[Request]:
+    longest: dict[str, Stroke] = {}
+    for stroke in strokes:
+        if stroke.role in (Role.WORLDLINE, Role.SIMULTANEITY):
+            known = longest.get(stroke.source)
+            if known is None or len(stroke.points) > len(known.points):
+                longest[stroke.source] = stroke
+    for source, stroke in longest.items():
+        result = scene.resolved.worldlines.get(source)
+        thing = result or scene.resolved.simultaneities[source]
+        name = thing.label or (thing.id if result is not None else "")
+        if not name:
+            continue
+        runs = (Run(name),)
+        size = measure.size(runs, Role.LINE_LABEL)
+        boxes, anchors = along_line(on_page(stroke.points), size, LINE_GAP)
+        yield Request(
+            source=source,
+            role=Role.LINE_LABEL,
+            hue=stroke.hue,
+            runs=runs,
+            size=size,
+            boxes=boxes,
+            anchors=anchors,
+        )
+
+
+def _axis_requests(
+    texts: Sequence[AxisText], measure: TextMeasure, on_page: _ToPage
+) -> Iterator[Request]:
+    for text in texts:
+        size = measure.size(text.runs, text.role)
+        at = on_page(text.at)
+        boxes = beside(at, text.aside, size, AXIS_GAP)
+        if text.role is Role.AXIS_TITLE:
+            # an axis ends at the window's edge, so its title slides back along it
+            back = np.array([(0.0, 0.0), (0.0, -1.0), (-1.0, 0.0), (-1.0, -1.0)]) * size
+            boxes = np.vstack([boxes + shift for shift in np.vstack([back, 2.0 * back[1:]])])
+        yield Request(
+            source="",
+            role=text.role,
+            hue=text.hue,
+            runs=text.runs,
+            size=size,
+            boxes=boxes,
+            anchors=at,
+            optional=text.role is Role.AXIS_NUMBER,
+        )
+
+
+def _label(item: Placed, corner: Points, scale: float) -> Label:
+    at = item.anchor / scale + corner
+    offset = item.corner - item.anchor
+    return Label(
+        source=item.request.source,
+        role=item.request.role,
+        hue=item.request.hue,
+        at=(float(at[0]), float(at[1])),
+        offset=(float(offset[0]), float(offset[1])),
+        size=item.request.size,
+        runs=item.request.runs,
+        overlaps=item.cost > 0.0,
+    )
+
+
+def _leader(item: Placed, corner: Points, scale: float) -> Stroke | None:
+    """A line from a label that had to go far to the point it names."""
+    if item.request.role is not Role.EVENT_LABEL:
+        return None
+    low, high = item.corner, item.corner + np.asarray(item.request.size)
+    nearest = np.clip(item.anchor, low, high)
+    gap = nearest - item.anchor
+    distance = float(np.hypot(*gap))
+    if distance < LEADER_FROM:
+        return None
+    start = item.anchor + gap * (4.0 / distance)
+    ends = np.array([start, nearest]) / scale + corner
+    return Stroke(source=item.request.source, role=Role.LEADER, points=ends)
