@@ -27,13 +27,15 @@ MAJOR, MINOR = 6.0, 3.5
 class AxisText(msgspec.Struct, frozen=True, kw_only=True):
     """A number or a title to be placed beside an axis.
 
-    ``aside`` is the unit vector on the page towards the side where it should stand.
+    ``aside`` is the unit vector on the page towards the side where it should stand, ``along``
+    that along the axis.
     """
 
     role: Role
     hue: int
     at: Points
     aside: Points
+    along: Points
     runs: tuple[Run, ...]
 
 
@@ -122,6 +124,7 @@ def axis_texts(scene: Scene, axis: Axis) -> Iterator[AxisText]:
         hue=hue,
         at=axis.at + axis.span[1] * axis.direction,
         aside=-aside if axis.primary else aside,
+        along=along,
         runs=axis_title(scene.resolved, axis.frame, axis.name),
     )
     per_unit = _per_unit(scene, axis)
@@ -134,6 +137,7 @@ def axis_texts(scene: Scene, axis: Axis) -> Iterator[AxisText]:
             hue=hue,
             at=axis.at + s * axis.direction,
             aside=aside,
+            along=along,
             runs=(Run(tick_text(value, axis.step)),),
         )
 

@@ -36,7 +36,8 @@ from tauline.resolve.results import EventResult, Resolved, SignalResult
 
 _ToPage = Callable[[Points], Points]
 
-EVENT_GAP, AXIS_GAP, LINE_GAP = 5.0, 5.0, 4.0
+EVENT_GAP, AXIS_GAP, LINE_GAP, CLOCK_GAP = 5.0, 5.0, 4.0, 5.0
+TITLE_SLIDES = (0.0, 6.0, 12.0, 18.0, 26.0, 36.0, 48.0)
 
 KEPT_OFF = frozenset(
     (
@@ -153,7 +154,10 @@ def _labels(
     if "labels" in scene.view.layers:
         requests += _event_requests(scene, measure, on_page)
         requests += _line_requests(scene, strokes, measure, on_page)
+    if "clock_ticks" in scene.view.layers:
+        requests += _clock_requests(scene, measure, on_page)
     requests += _axis_requests(texts, measure, on_page)
+    requests = _without_doubles(requests)
     requests.sort(key=lambda request: _ORDER[request.role])
     placed = place_labels(
         requests,
@@ -169,8 +173,27 @@ def _labels(
     return labels, leaders, {item.request.key: item.choice for item in placed}
 
 
-_ORDER = {Role.AXIS_TITLE: 0, Role.EVENT_LABEL: 1, Role.LINE_LABEL: 2, Role.AXIS_NUMBER: 3}
-"""The most important first: numbers come last, since some can be spared."""
+_ORDER = {
+    Role.AXIS_TITLE: 0,
+    Role.EVENT_LABEL: 1,
+    Role.AXIS_NUMBER: 2,
+    Role.LINE_LABEL: 3,
+    Role.CLOCK_NUMBER: 4,
+}
+"""The least free to move first; clock numbers come last, since they can be spared."""
+
+
+def _without_doubles(requests: Sequence[Request]) -> list[Request]:
+    """Leave out a clock's numbers that an axis along its worldline writes at the same places."""
+    on_axes = [r for r in requests if r.role is Role.AXIS_NUMBER]
+
+    def doubled(request: Request) -> bool:
+        return request.role is Role.CLOCK_NUMBER and any(
+            other.runs == request.runs and np.hypot(*(other.anchors - request.anchors)) < 2.0
+            for other in on_axes
+        )
+
+    return [request for request in requests if not doubled(request)]
 
 
 def _event_requests(
@@ -227,17 +250,36 @@ def _line_requests(
         )
 
 
+def _clock_requests(
+    scene: Scene, measure: TextMeasure, on_page: _ToPage
+) -> Iterator[Request]:
+    for number in parts.clock_numbers(scene):
+        runs = (Run(number.text),)
+        size = measure.size(runs, Role.CLOCK_NUMBER)
+        at = on_page(number.at)
+        yield Request(
+            source=number.source,
+            role=Role.CLOCK_NUMBER,
+            hue=number.hue,
+            runs=runs,
+            size=size,
+            boxes=beside(at, number.aside, size, CLOCK_GAP),
+            anchors=at,
+            optional=True,
+        )
+
+
 def _axis_requests(
     texts: Sequence[AxisText], measure: TextMeasure, on_page: _ToPage
 ) -> Iterator[Request]:
     for text in texts:
         size = measure.size(text.runs, text.role)
         at = on_page(text.at)
-        boxes = beside(at, text.aside, size, AXIS_GAP)
-        if text.role is Role.AXIS_TITLE:
-            # an axis ends at the window's edge, so its title slides back along it
-            back = np.array([(0.0, 0.0), (0.0, -1.0), (-1.0, 0.0), (-1.0, -1.0)]) * size
-            boxes = np.vstack([boxes + shift for shift in np.vstack([back, 2.0 * back[1:]])])
+        # an axis ends at the window's edge, so its title may slide back along it
+        backs = TITLE_SLIDES if text.role is Role.AXIS_TITLE else (0.0,)
+        boxes = np.vstack(
+            [beside(at - back * text.along, text.aside, size, AXIS_GAP) for back in backs]
+        )
         yield Request(
             source="",
             role=text.role,

@@ -28,6 +28,7 @@ class Role(StrEnum):
     HYPERBOLA = "hyperbola"
     WORLDLINE = "worldline"
     CLOCK_TICK = "clock_tick"
+    CLOCK_NUMBER = "clock_number"
     CORNER = "corner"
     SIGNAL = "signal"
     SIMULTANEITY = "simultaneity"

@@ -12,7 +12,7 @@ from tauline.charts.inertial import InertialChart
 from tauline.figure.clip import clip_polygon, clip_polyline, clip_ray
 from tauline.figure.drawing import Fill, Marker, Points, Role, Stroke, Window
 from tauline.figure.symbols import frame_hue
-from tauline.figure.ticks import step_for, ticks_between
+from tauline.figure.ticks import step_for, tick_text, ticks_between
 from tauline.figure.view import DiagramView
 from tauline.resolve.results import (
     BodyResult,
@@ -102,7 +102,7 @@ def worldline_strokes(scene: Scene, result: WorldlineResult) -> Iterator[Stroke]
     for piece in clip_polyline(drawn[1], scene.window):
         yield Stroke(source=result.id, role=Role.WORLDLINE, hue=result.observer, points=piece)
     if "clock_ticks" in scene.view.layers:
-        yield from _clock_ticks(scene, result, float(drawn[0][0]), float(drawn[0][-1]))
+        yield from _clock_ticks(scene, result)
 
 
 def corner_markers(scene: Scene, result: WorldlineResult) -> Iterator[Marker]:
@@ -115,32 +115,73 @@ def corner_markers(scene: Scene, result: WorldlineResult) -> Iterator[Marker]:
             )
 
 
-def _clock_ticks(
-    scene: Scene, result: WorldlineResult, first: float, last: float
-) -> Iterator[Stroke]:
-    """Short cross strokes at 1-2-5 readings of the carried clock."""
-    units, line = scene.resolved.units, result.line
-    middle = 0.5 * (first + last)
-    relative = float(line.rapidity(middle)) - scene.view.frame.rapidity
-    printed = scene.scale * math.sqrt(math.cosh(2.0 * relative))
-    step = units.from_reader(step_for(units.to_reader(CLOCK_TICK / printed, TIME)), TIME)
-    readings = ticks_between(result.reading(first), result.reading(last), step)
-    taus = np.clip(readings - result.clock_offset, line.start, line.end)
-    if taus.size == 0:
+class ClockNumber(msgspec.Struct, frozen=True, kw_only=True):
+    """A reading to be written beside a tick of a clock; ``aside`` points across the line."""
+
+    source: str
+    hue: int
+    at: Points
+    aside: Points
+    text: str
+
+
+def clock_numbers(scene: Scene) -> Iterator[ClockNumber]:
+    """The readings at the ticks of all moving clocks; those at rest agree with the t axis."""
+    units = scene.resolved.units
+    for result in scene.resolved.worldlines.values():
+        found = _clock_places(scene, result)
+        if found is None:
+            continue
+        readings, places, across, step = found
+        shown = units.to_reader(step, TIME)
+        for reading, place, aside in zip(readings, places, across, strict=True):
+            if aside[1] != 0.0 and scene.holds(place):
+                yield ClockNumber(
+                    source=result.id,
+                    hue=result.observer,
+                    at=place,
+                    aside=aside,
+                    text=tick_text(units.to_reader(float(reading), TIME), shown),
+                )
+
+
+def _clock_ticks(scene: Scene, result: WorldlineResult) -> Iterator[Stroke]:
+    """Short strokes across a worldline at 1-2-5 readings of the carried clock."""
+    found = _clock_places(scene, result)
+    if found is None:
         return
-    places = scene.chart.to_chart(line.event(taus)).T
-    slopes = line.rapidity(taus) - scene.view.frame.rapidity
-    # across the line on the page: the direction (sinh, cosh) turned by a right angle
-    across = np.stack([np.cosh(slopes), -np.sinh(slopes)], axis=1)
-    across *= (0.5 * TICK_LENGTH / scene.scale) / np.hypot(*across.T)[:, np.newaxis]
-    for place, half in zip(places, across, strict=True):
+    for place, aside in zip(found[1], found[2], strict=True):
         if scene.holds(place):
+            half = aside * (0.5 * TICK_LENGTH / scene.scale)
             yield Stroke(
                 source=result.id,
                 role=Role.CLOCK_TICK,
                 hue=result.observer,
                 points=np.array([place - half, place + half]),
             )
+
+
+def _clock_places(
+    scene: Scene, result: WorldlineResult
+) -> tuple[Points, Points, Points, float] | None:
+    """Readings at the ticks of a clock, their places, unit vectors across, and the step."""
+    span = visible_span(result.line, scene.chart, scene.window)
+    if span is None:
+        return None
+    units, line = scene.resolved.units, result.line
+    relative = float(line.rapidity(0.5 * sum(span))) - scene.view.frame.rapidity
+    printed = scene.scale * math.sqrt(math.cosh(2.0 * relative))
+    step = units.from_reader(step_for(units.to_reader(CLOCK_TICK / printed, TIME)), TIME)
+    readings = ticks_between(result.reading(span[0]), result.reading(span[1]), step)
+    if readings.size == 0:
+        return None
+    taus = np.clip(readings - result.clock_offset, line.start, line.end)
+    places = scene.chart.to_chart(line.event(taus)).T
+    slopes = line.rapidity(taus) - scene.view.frame.rapidity
+    # the line runs along (sinh, cosh) on the page; turned by a right angle
+    across = np.stack([np.ones_like(slopes), -np.tanh(slopes)], axis=1)
+    across /= np.hypot(*across.T)[:, np.newaxis]
+    return readings, places, across, step
 
 
 def signal_strokes(scene: Scene, signal: SignalResult) -> Iterator[Stroke]:

@@ -55,11 +55,12 @@ BLENDS: dict[Role, float] = {
 }
 """Share of the ground in a role's colour."""
 
-SMALL = frozenset((Role.AXIS_NUMBER,))
+SMALL = frozenset((Role.AXIS_NUMBER, Role.CLOCK_NUMBER))
 TEXTS = frozenset(
     (
         Role.AXIS_NUMBER,
         Role.AXIS_TITLE,
+        Role.CLOCK_NUMBER,
         Role.EVENT_LABEL,
         Role.LINE_LABEL,
         Role.CAPTION,

@@ -19,6 +19,8 @@ DEFAULT_LAYERS: frozenset[Layer] = frozenset(
 )
 MARGIN = 0.09
 """Share of the larger extent left free around what is fitted."""
+LEAST_ASPECT, GREATEST_ASPECT = 0.7, 1.6
+"""Bounds of width to height of a fitted window."""
 
 
 class DiagramView(msgspec.Struct, frozen=True, kw_only=True):
@@ -74,15 +76,12 @@ def fit_window(resolved: Resolved, frame: FrameResult) -> Window:
     if extent == 0.0:
         extent = max(abs(float(x[0])), abs(float(t[0])), 1.0)
     pad = MARGIN * extent
-    # a story all at one place or one time still needs some room beside it
-    room_x = max(pad, 0.5 * (0.3 * extent - float(np.ptp(x))))
-    room_t = max(pad, 0.5 * (0.3 * extent - float(np.ptp(t))))
-    return Window(
-        float(x.min()) - room_x,
-        float(x.max()) + room_x,
-        float(t.min()) - room_t,
-        float(t.max()) + room_t,
+    window = Window(
+        float(x.min()) - pad, float(x.max()) + pad, float(t.min()) - pad, float(t.max()) + pad
     )
+    # a tall or a flat story needs some room beside it for its labels
+    aspect = window.width / window.height
+    return window_for_aspect(window, min(max(aspect, LEAST_ASPECT), GREATEST_ASPECT))
 
 
 def window_for_aspect(window: Window, aspect: float) -> Window:
