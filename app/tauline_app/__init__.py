@@ -1,0 +1,1 @@
+"""The window of Tauline: shows and edits a scenario; computes no physics."""
