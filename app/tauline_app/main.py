@@ -11,8 +11,8 @@ from types import TracebackType
 from PySide6.QtCore import QTimer
 from PySide6.QtGui import QIcon
 from PySide6.QtWidgets import QApplication
-from tauline.resources import resource
 
+from tauline.resources import resource
 from tauline_app.main_window import MainWindow
 
 ExceptHook = Callable[[type[BaseException], BaseException, TracebackType | None], object]
@@ -51,8 +51,8 @@ def _tell_in(window: MainWindow) -> ExceptHook:
     def tell(kind: type[BaseException], error: BaseException, trace: TracebackType | None) -> None:
         traceback.print_exception(kind, error, trace)
         window.banner.say(
-            f"Something went wrong in the program: {error or kind.__name__}. Your document is as"
-            " it was before this step; saving it under another name is safe."
+            f"Something went wrong in the program: {str(error) or kind.__name__}."
+            " Your document is as it was before this step; saving it is safe."
         )
 
     return tell

@@ -9,10 +9,10 @@ from typing import TYPE_CHECKING
 import msgspec
 from PySide6.QtGui import QAction, QActionGroup, QKeySequence
 from PySide6.QtWidgets import QApplication, QLineEdit, QMenu, QMessageBox
+
 from tauline import __version__
 from tauline.resources import scenarios_folder
 from tauline.scenario.objects import Layer
-
 from tauline_app.actions.edits import redo, undo
 from tauline_app.canvas.canvas import ZOOM_STEP
 from tauline_app.theme import Scheme
@@ -87,9 +87,7 @@ class Menus:
     def _edit_menu(self, menu: QMenu) -> None:
         session, keys = self._session, QKeySequence.StandardKey
         self.undo = self._action(menu, "&Undo", partial(undo, session), [keys.Undo])
-        self.redo = self._action(
-            menu, "&Redo", partial(redo, session), ["Ctrl+Shift+Z", "Ctrl+Y"]
-        )
+        self.redo = self._action(menu, "&Redo", partial(redo, session), ["Ctrl+Shift+Z", "Ctrl+Y"])
         menu.addSeparator()
         self._action(menu, "Copy &readouts", self._window.readouts.copy, ["Ctrl+Shift+C"])
         self._action(menu, "Copy event &table", self._window.events.copy, ["Ctrl+Alt+C"])

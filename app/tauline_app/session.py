@@ -7,6 +7,7 @@ from pathlib import Path
 
 import msgspec
 from PySide6.QtCore import QObject, Signal
+
 from tauline.figure.drawing import Window
 from tauline.figure.view import fit_window
 from tauline.resolve import FrameResult, Resolved, resolve
@@ -14,7 +15,6 @@ from tauline.scenario.history import History
 from tauline.scenario.read import Loaded
 from tauline.scenario.scenario import Scenario
 from tauline.scenario.source import Source
-
 from tauline_app.viewing import ViewState, kept_over, opening_view, seen_from
 
 EMPTY = Scenario(title="")

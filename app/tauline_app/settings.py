@@ -21,7 +21,9 @@ class Settings:
     def recent(self) -> list[Path]:
         """Files opened lately that are still there, the last one first."""
         stored = self._store.value("recent", [])
-        names = [stored] if isinstance(stored, str) else list(stored or [])
+        names = [stored] if isinstance(stored, str) else stored
+        if not isinstance(names, list):
+            return []
         return [path for path in map(Path, names) if path.is_file()]
 
     def opened(self, path: Path) -> None:

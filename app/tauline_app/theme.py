@@ -7,6 +7,7 @@ from enum import StrEnum
 from PySide6.QtCore import Qt
 from PySide6.QtGui import QColor, QGuiApplication, QPalette
 from PySide6.QtWidgets import QApplication
+
 from tauline.figure.drawing import NEUTRAL, Role
 from tauline.figure.style import SCREEN_DARK, SCREEN_LIGHT, Colour, Style
 

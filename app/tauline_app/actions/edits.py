@@ -6,7 +6,6 @@ from typing import Any
 
 from tauline.errors import TaulineError
 from tauline.scenario.edit import Field, fields_of, set_field, set_parameter, value_of
-
 from tauline_app.session import Session
 
 

@@ -8,12 +8,11 @@ from tauline.errors import TaulineError
 from tauline.export.figure import figure_bytes
 from tauline.export.tables import write_table
 from tauline.export.text import write_text
-from tauline.files import replace_file
 from tauline.figure.view import DiagramView
+from tauline.files import replace_file
 from tauline.readouts import EventTable
 from tauline.scenario.read import read
 from tauline.scenario.write import save
-
 from tauline_app.session import Session
 
 

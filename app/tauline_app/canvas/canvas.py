@@ -8,11 +8,11 @@ import pyqtgraph as pg
 from PySide6.QtCore import QRectF, Qt, Signal
 from PySide6.QtGui import QKeyEvent, QPainter
 from PySide6.QtWidgets import QStyleOptionGraphicsItem, QWidget
+
 from tauline.figure.diagram import diagram
 from tauline.figure.drawing import Drawing, Window
 from tauline.figure.style import SCREEN_LIGHT, Style
 from tauline.resolve.relations import related
-
 from tauline_app.canvas.hit import thing_at
 from tauline_app.canvas.measure import ScreenMeasure
 from tauline_app.canvas.sheet import Sheet
@@ -209,7 +209,10 @@ class Canvas(pg.GraphicsView):  # type: ignore[misc]
         key = Qt.Key(event.key())
         shown = self.shown_window()
         if key in steps and shown is not None:
-            dx, dt = (PAN_STEP * s * side for s, side in zip(steps[key], (shown.width, shown.height), strict=True))
+            dx, dt = (
+                PAN_STEP * s * side
+                for s, side in zip(steps[key], (shown.width, shown.height), strict=True)
+            )
             self.box.translateBy(x=dx, y=dt)
         elif key in (Qt.Key.Key_Plus, Qt.Key.Key_Equal):
             self.zoom(ZOOM_STEP)

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import numpy as np
+
 from tauline.figure.drawing import Drawing, Points, Role
 
 EVENT_REACH, LINE_REACH = 9.0, 6.0

@@ -5,6 +5,7 @@ from __future__ import annotations
 from functools import lru_cache
 
 from PySide6.QtGui import QFont, QFontMetricsF
+
 from tauline.figure.drawing import Role, Run
 from tauline.figure.measure import SUB_SIZE
 from tauline.figure.style import Style

@@ -7,15 +7,16 @@ raster screen that is several times faster than one item, or one path, for each.
 from __future__ import annotations
 
 from collections.abc import Collection
+from itertools import pairwise
 
 import numpy as np
 from PySide6.QtCore import QLineF, QPointF, Qt
 from PySide6.QtGui import QBrush, QColor, QFont, QPainter, QPen, QPolygonF
+
 from tauline.figure.arrows import arrow_head
 from tauline.figure.drawing import Drawing, Points, Role
 from tauline.figure.measure import DESCENT, SUB_DROP
 from tauline.figure.style import Style, blend
-
 from tauline_app.canvas.measure import run_font, run_width
 from tauline_app.theme import qcolour
 
@@ -92,7 +93,9 @@ class Sheet:
         role, hue, dimmed, selected = Role(look[0]), look[1], look[2], look[3]
         width = self._style.width(role) + (EMPHASIS if selected else 0.0)
         pen = QPen(self._colour(role, hue, dimmed), width)
-        pen.setCapStyle(Qt.PenCapStyle.SquareCap if role is Role.WORLDLINE else Qt.PenCapStyle.FlatCap)
+        pen.setCapStyle(
+            Qt.PenCapStyle.SquareCap if role is Role.WORLDLINE else Qt.PenCapStyle.FlatCap
+        )
         dash = self._style.dash(role, hue)
         if dash:
             pen.setDashPattern([length / width for length in dash])
@@ -111,7 +114,7 @@ class Sheet:
             points = self.pixels(stroke.points)
             ends = points.tolist()
             self._lines.setdefault(look, []).extend(
-                QLineF(*here, *there) for here, there in zip(ends[:-1], ends[1:], strict=True)
+                QLineF(*here, *there) for here, there in pairwise(ends)
             )
             if stroke.arrow is not None:
                 head = arrow_head(points, stroke.arrow, 1.5)

@@ -19,11 +19,11 @@ from PySide6.QtWidgets import (
     QVBoxLayout,
     QWidget,
 )
+
 from tauline.export.figure import DEFAULT_WIDTH, FORMATS, GREATEST_SIDE, LEAST_SIDE
 from tauline.figure.drawing import Window
 from tauline.figure.view import DiagramView, default_view
 from tauline.scenario.units import TIME
-
 from tauline_app.actions.files import export_figure
 from tauline_app.session import Session
 
@@ -74,7 +74,9 @@ class ExportFigureDialog(QDialog):
         buttons.rejected.connect(self.reject)
         layout = QVBoxLayout(self)
         layout.addLayout(form)
-        layout.addWidget(QLabel("The ending names the format: " + ", ".join(f".{f}" for f in FORMATS)))
+        layout.addWidget(
+            QLabel("The ending names the format: " + ", ".join(f".{f}" for f in FORMATS))
+        )
         layout.addWidget(self.message)
         layout.addWidget(buttons)
         self.setMinimumWidth(460)

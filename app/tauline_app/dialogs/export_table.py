@@ -20,8 +20,8 @@ from PySide6.QtWidgets import (
     QVBoxLayout,
     QWidget,
 )
-from tauline.readouts import chosen_frames, event_table
 
+from tauline.readouts import chosen_frames, event_table
 from tauline_app.actions.files import export_table
 from tauline_app.session import Session
 

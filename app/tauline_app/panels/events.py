@@ -26,10 +26,10 @@ from PySide6.QtWidgets import (
     QVBoxLayout,
     QWidget,
 )
+
 from tauline.export.tables import write_table
 from tauline.readouts import EventTable, event_table, format_number
 from tauline.scenario.units import LENGTH, TIME
-
 from tauline_app.session import Session
 
 Index = QModelIndex | QPersistentModelIndex

@@ -4,13 +4,13 @@ from __future__ import annotations
 
 from PySide6.QtCore import QSignalBlocker, Qt
 from PySide6.QtGui import QColor, QIcon, QPainter, QPixmap
-from PySide6.QtWidgets import QAbstractItemView, QTreeWidget, QTreeWidgetItem, QWidget
+from PySide6.QtWidgets import QAbstractItemView, QHeaderView, QTreeWidget, QTreeWidgetItem, QWidget
+
 from tauline.figure.drawing import NEUTRAL
 from tauline.figure.style import SCREEN_LIGHT, Style
 from tauline.figure.symbols import frame_hue
 from tauline.resolve.relations import owner_of
 from tauline.scenario.objects import kind_of
-
 from tauline_app.session import Session
 from tauline_app.theme import hue_colour
 
@@ -46,6 +46,10 @@ class ObjectsPanel(QTreeWidget):
         self.setHeaderLabels(["Object", "State"])
         self.setSelectionMode(QAbstractItemView.SelectionMode.ExtendedSelection)
         self.setUniformRowHeights(True)
+        self.setIndentation(14)
+        self.header().setSectionResizeMode(0, QHeaderView.ResizeMode.Stretch)
+        self.header().setSectionResizeMode(1, QHeaderView.ResizeMode.ResizeToContents)
+        self.header().setStretchLastSection(False)
         self.setAccessibleName("Objects")
         self.itemSelectionChanged.connect(self._selected)
         session.document_changed.connect(self.rebuild)
@@ -80,18 +84,20 @@ class ObjectsPanel(QTreeWidget):
             for place, group in enumerate(order):
                 now = self.indexOfTopLevelItem(group)
                 if now != place:
-                    self.insertTopLevelItem(place, self.takeTopLevelItem(now))
+                    self.takeTopLevelItem(now)
+                    self.insertTopLevelItem(place, group)
                     group.setExpanded(True)
-            self.resizeColumnToContents(0)
         self._follow()
 
     def item_of(self, object_id: str) -> QTreeWidgetItem | None:
         """The row of an object."""
         for k in range(self.topLevelItemCount()):
             group = self.topLevelItem(k)
-            for n in range(group.childCount() if group is not None else 0):
+            if group is None:
+                continue
+            for n in range(group.childCount()):
                 item = group.child(n)
-                if item.data(0, ID) == object_id:
+                if item is not None and item.data(0, ID) == object_id:
                     return item
         return None
 

@@ -10,8 +10,8 @@ from PySide6.QtWidgets import (
     QTableWidgetItem,
     QWidget,
 )
-from tauline.scenario.diagnosis import Severity
 
+from tauline.scenario.diagnosis import Severity
 from tauline_app.session import Session
 
 WEIGHTS = {

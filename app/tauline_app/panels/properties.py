@@ -5,10 +5,10 @@ from __future__ import annotations
 from PySide6.QtCore import Qt
 from PySide6.QtGui import QPalette
 from PySide6.QtWidgets import QFormLayout, QLabel, QLineEdit, QScrollArea, QWidget
+
 from tauline.resolve.relations import owner_of
 from tauline.scenario.edit import Field, fields_of
 from tauline.scenario.objects import Broken, kind_of
-
 from tauline_app.actions.edits import change_field, change_parameter
 from tauline_app.session import Session
 

@@ -16,10 +16,10 @@ from PySide6.QtGui import (
     QPolygonF,
 )
 from PySide6.QtWidgets import QSizePolicy, QToolTip, QWidget
+
 from tauline.figure.rail import Flag, flags, free_frame, ruler_marks
 from tauline.figure.style import SCREEN_LIGHT, Style
 from tauline.resolve import FrameResult
-
 from tauline_app.session import Session
 from tauline_app.theme import hue_colour
 from tauline_app.viewing import ViewState, seen_from
@@ -261,7 +261,11 @@ class Rail(QWidget):
         painter.setPen(Qt.PenStyle.NoPen)
         painter.drawPolygon(
             QPolygonF(
-                [QPointF(middle, top), QPointF(middle - 5.0, top - 8.0), QPointF(middle + 5.0, top - 8.0)]
+                [
+                    QPointF(middle, top),
+                    QPointF(middle - 5.0, top - 8.0),
+                    QPointF(middle + 5.0, top - 8.0),
+                ]
             )
         )
 
@@ -269,6 +273,8 @@ class Rail(QWidget):
 def _coasts(session: Session, line_id: str) -> bool:
     """Whether a worldline has one rest frame for good."""
     legs = [f for f in session.resolved.leg_frames.values() if f.leg_of == line_id]
-    return len(legs) == 1 and legs[0].id.endswith(".leg-1") and not session.resolved.worldlines[
-        line_id
-    ].line.corners
+    return (
+        len(legs) == 1
+        and legs[0].id.endswith(".leg-1")
+        and not session.resolved.worldlines[line_id].line.corners
+    )

@@ -15,8 +15,8 @@ from PySide6.QtWidgets import (
     QVBoxLayout,
     QWidget,
 )
-from tauline.readouts import Readout, readouts_for
 
+from tauline.readouts import Readout, readouts_for
 from tauline_app.session import Session
 
 VALUE_WIDTH, FRAME_WIDTH = 128, 82

@@ -2,16 +2,15 @@
 
 from __future__ import annotations
 
+import msgspec
 from PySide6.QtGui import QPalette
 from PySide6.QtWidgets import QComboBox, QHBoxLayout, QLabel, QLineEdit, QVBoxLayout, QWidget
+
 from tauline.errors import QuantityError
 from tauline.figure.rail import free_frame, typed_rapidity
 from tauline.figure.style import Style
 from tauline.readouts import format_number
 from tauline.readouts.observers import velocity_readouts
-
-import msgspec
-
 from tauline_app.panels.rail import Rail
 from tauline_app.session import Session
 

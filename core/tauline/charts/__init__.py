@@ -1,0 +1,1 @@
+"""Charts: from where spacetime is looked at."""

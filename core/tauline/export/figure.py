@@ -111,7 +111,7 @@ def drawing_bytes(
     import matplotlib as mpl
     from matplotlib.figure import Figure
 
-    settings = {
+    settings: dict[Any, Any] = {
         "pdf.fonttype": 42,
         "svg.fonttype": "none",
         "svg.hashsalt": "tauline",
@@ -135,13 +135,9 @@ def drawing_bytes(
     return buffer.getvalue()
 
 
-def wrapped(
-    runs: tuple[Run, ...], width: float, measure: PrintMeasure
-) -> list[list[Run]]:
+def wrapped(runs: tuple[Run, ...], width: float, measure: PrintMeasure) -> list[list[Run]]:
     """Break runs into lines no wider than ``width`` (points), between words."""
-    pieces = [
-        Run(word, run.style) for run in runs for word in _words(run.text)
-    ]
+    pieces = [Run(word, run.style) for run in runs for word in _words(run.text)]
     lines: list[list[Run]] = [[]]
     used = 0.0
     for piece in pieces:
@@ -149,7 +145,7 @@ def wrapped(
         if lines[-1] and used + measure.size((Run(piece.text.rstrip()),), Role.CAPTION)[0] > width:
             lines.append([])
             used = 0.0
-            piece = Run(piece.text.lstrip(), piece.style)  # noqa: PLW2901
+            piece = Run(piece.text.lstrip(), piece.style)
         lines[-1].append(piece)
         used += own
     return [line for line in lines if line]
@@ -170,7 +166,9 @@ class _Painter:
         from matplotlib.lines import Line2D
 
         for fill in self._drawing.fills:
-            self._polygon(self._page(fill.points), self._style.colour(fill.role, fill.hue), fill.source)
+            self._polygon(
+                self._page(fill.points), self._style.colour(fill.role, fill.hue), fill.source
+            )
         for stroke in self._drawing.strokes:
             points = self._page(stroke.points)
             colour = self._style.colour(stroke.role, stroke.hue)
@@ -200,7 +198,7 @@ class _Painter:
 
     def _page(self, points: Points) -> Points:
         w = self._drawing.window
-        return (points - (w.x0, w.t0)) * self._drawing.scale + self._shift
+        return np.asarray((points - (w.x0, w.t0)) * self._drawing.scale + self._shift)
 
     def _next(self) -> int:
         self._depth += 1
@@ -210,8 +208,15 @@ class _Painter:
         from matplotlib.patches import Polygon
 
         self._axes.add_patch(
-            Polygon(points, closed=True, facecolor=_hex(colour), edgecolor="none",
-                    linewidth=0.0, zorder=self._next(), gid=source or None)
+            Polygon(
+                points,
+                closed=True,
+                facecolor=_hex(colour),
+                edgecolor="none",
+                linewidth=0.0,
+                zorder=self._next(),
+                gid=source or None,
+            )
         )
 
     def _marker(self, role: Role, hue: int, at: tuple[float, float], source: str) -> None:
@@ -223,20 +228,36 @@ class _Painter:
         if role is Role.CORNER:
             spots = centre + 1.25 * radius * np.array([(1, 0), (0, 1), (-1, 0), (0, -1)])
             self._axes.add_patch(
-                Polygon(spots, closed=True, facecolor=ground, edgecolor=colour, linewidth=0.8,
-                        zorder=self._next(), gid=_group(role, source))
+                Polygon(
+                    spots,
+                    closed=True,
+                    facecolor=ground,
+                    edgecolor=colour,
+                    linewidth=0.8,
+                    zorder=self._next(),
+                    gid=_group(role, source),
+                )
             )
             return
         cased = radius + self._style.casing
         for size, paint, gid in ((cased, ground, None), (radius, colour, _group(role, source))):
             self._axes.add_patch(
-                Circle((float(centre[0]), float(centre[1])), size, facecolor=paint,
-                       edgecolor="none", linewidth=0.0, zorder=self._next(), gid=gid)
+                Circle(
+                    (float(centre[0]), float(centre[1])),
+                    size,
+                    facecolor=paint,
+                    edgecolor="none",
+                    linewidth=0.0,
+                    zorder=self._next(),
+                    gid=gid,
+                )
             )
 
     def _label(self, label: Label) -> None:
         corner = self._page(np.asarray(label.at)) + label.offset
-        self._runs(label.runs, corner, label.role, self._style.colour(label.role, label.hue), label.source)
+        self._runs(
+            label.runs, corner, label.role, self._style.colour(label.role, label.hue), label.source
+        )
 
     def _caption(self) -> None:
         width = self._drawing.window.width * self._drawing.scale

@@ -161,13 +161,12 @@ def _latex(table: EventTable) -> str:
         "\\toprule",
     ]
     groups = [""]
-    for frame in table.frames:
-        groups.append(f"\\multicolumn{{2}}{{c}}{{{_escaped_latex(_name(frame))}}}")
+    groups += [
+        f"\\multicolumn{{2}}{{c}}{{{_escaped_latex(_name(frame))}}}" for frame in table.frames
+    ]
     groups += [""] if table.interval_from else []
     lines.append(" & ".join(groups) + r" \\")
-    lines += [
-        f"\\cmidrule(lr){{{2 * k + 2}-{2 * k + 3}}}" for k in range(len(table.frames))
-    ]
+    lines += [f"\\cmidrule(lr){{{2 * k + 2}-{2 * k + 3}}}" for k in range(len(table.frames))]
     lines.append(" & ".join(_latex_heading(column) for column in grid.columns) + r" \\")
     lines.append("\\midrule")
     for row in grid.rows:
@@ -194,7 +193,7 @@ def _name(frame: FrameResult) -> str:
 
 def _html(table: EventTable) -> str:
     grid = _grid(table)
-    last = "<th scope=\"col\" rowspan=\"2\">{}</th>"
+    last = '<th scope="col" rowspan="2">{}</th>'
     span = "".join(
         f'<th scope="colgroup" colspan="2">{html.escape(_name(frame))}</th>'
         for frame in table.frames

@@ -1,4 +1,4 @@
-"""Axes of the viewing frame and of other frames: lines, ticks, numbers, titles; grid, hyperbolas."""
+"""Axes of the viewing frame and of others: lines, ticks, numbers, titles; grid, hyperbolas."""
 
 from __future__ import annotations
 
@@ -102,9 +102,7 @@ def axis_strokes(scene: Scene, axis: Axis) -> Iterator[Stroke]:
         half = axis.across * (0.5 * length / scene.scale / float(np.hypot(*axis.across)))
         for s in values:
             at = axis.at + s * axis.direction
-            yield Stroke(
-                role=Role.AXIS_TICK, hue=hue, points=np.array([at - half, at + half])
-            )
+            yield Stroke(role=Role.AXIS_TICK, hue=hue, points=np.array([at - half, at + half]))
 
 
 def axis_texts(scene: Scene, axis: Axis) -> Iterator[AxisText]:

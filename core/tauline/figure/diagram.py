@@ -143,13 +143,11 @@ def _labels(
     corner = np.array([w.x0, w.t0])
 
     def on_page(points: Points) -> Points:
-        return (points - corner) * scene.scale
+        return np.asarray((points - corner) * scene.scale)
 
     lines = [stroke for stroke in strokes if stroke.role in KEPT_OFF]
     obstacles = segments_of(on_page(stroke.points) for stroke in lines)
-    dots = np.array(
-        [(*on_page(np.asarray(marker.at)), 3.5) for marker in markers]
-    ).reshape(-1, 3)
+    dots = np.array([(*on_page(np.asarray(marker.at)), 3.5) for marker in markers]).reshape(-1, 3)
     requests: list[Request] = []
     if "labels" in scene.view.layers:
         requests += _event_requests(scene, measure, on_page)
@@ -196,9 +194,7 @@ def _without_doubles(requests: Sequence[Request]) -> list[Request]:
     return [request for request in requests if not doubled(request)]
 
 
-def _event_requests(
-    scene: Scene, measure: TextMeasure, on_page: _ToPage
-) -> Iterator[Request]:
+def _event_requests(scene: Scene, measure: TextMeasure, on_page: _ToPage) -> Iterator[Request]:
     for event in scene.resolved.events.values():
         place = scene.place(event.point)
         if event.owner or not scene.holds(place):
@@ -250,9 +246,7 @@ def _line_requests(
         )
 
 
-def _clock_requests(
-    scene: Scene, measure: TextMeasure, on_page: _ToPage
-) -> Iterator[Request]:
+def _clock_requests(scene: Scene, measure: TextMeasure, on_page: _ToPage) -> Iterator[Request]:
     for number in parts.clock_numbers(scene):
         runs = (Run(number.text),)
         size = measure.size(runs, Role.CLOCK_NUMBER)

@@ -115,7 +115,7 @@ def around_point(at: Array, size: tuple[float, float], gap: float) -> Array:
             (-0.5 * width, distance),
             (-0.5 * width, -distance - height),
         ]
-    return at + np.array(corners)
+    return np.asarray(at + np.array(corners))
 
 
 def beside(at: Array, aside: Array, size: tuple[float, float], gap: float) -> Array:
@@ -129,9 +129,7 @@ def beside(at: Array, aside: Array, size: tuple[float, float], gap: float) -> Ar
     return np.array(corners)
 
 
-def along_line(
-    points: Array, size: tuple[float, float], gap: float
-) -> tuple[Array, Array]:
+def along_line(points: Array, size: tuple[float, float], gap: float) -> tuple[Array, Array]:
     """Candidate corners, and their anchors, beside a polyline: near its end first."""
     steps = np.hypot(*np.diff(points, axis=0).T)
     reach = np.concatenate([[0.0], np.cumsum(steps)])

@@ -30,6 +30,8 @@ TOLERANCE = 0.15
 """Greatest distance, in points, of a drawn curve from the true one."""
 CLOCK_TICK = 26.0
 """Least distance, in points, between the ticks of a clock."""
+CLOCK_NUMBER = 56.0
+"""Least distance, in points, between its numbers."""
 TICK_LENGTH = 5.0
 
 
@@ -60,14 +62,20 @@ class Scene(msgspec.Struct, frozen=True):
         return bool(w.x0 <= place[0] <= w.x1 and w.t0 <= place[1] <= w.t1)
 
 
-def visible_span(line: Worldline, chart: InertialChart, window: Window) -> tuple[float, float] | None:
+def visible_span(
+    line: Worldline, chart: InertialChart, window: Window
+) -> tuple[float, float] | None:
     """Return the proper times between which a line is in the window's bounding diamond.
 
     That is u′ from t₀ − x₁ to t₁ − x₀ and v′ from t₀ + x₀ to t₁ + x₁; on a timelike line both
     only grow. None where it is never there.
     """
-    corners = np.array([[window.t0 - window.x1, window.t1 - window.x0],
-                        [window.t0 + window.x0, window.t1 + window.x1]])
+    corners = np.array(
+        [
+            [window.t0 - window.x1, window.t1 - window.x0],
+            [window.t0 + window.x0, window.t1 + window.x1],
+        ]
+    )
     stretch = math.exp(chart.rapidity)
     bounds = corners * [[1.0 / stretch], [stretch]] + chart.origin[:, np.newaxis]
     first, last = line.start, line.end
@@ -110,9 +118,7 @@ def corner_markers(scene: Scene, result: WorldlineResult) -> Iterator[Marker]:
     for corner in result.line.corners:
         place = scene.place(result.line.event(corner))
         if scene.holds(place):
-            yield Marker(
-                source=result.id, role=Role.CORNER, hue=result.observer, at=_pair(place)
-            )
+            yield Marker(source=result.id, role=Role.CORNER, hue=result.observer, at=_pair(place))
 
 
 class ClockNumber(msgspec.Struct, frozen=True, kw_only=True):
@@ -129,7 +135,7 @@ def clock_numbers(scene: Scene) -> Iterator[ClockNumber]:
     """The readings at the ticks of all moving clocks; those at rest agree with the t axis."""
     units = scene.resolved.units
     for result in scene.resolved.worldlines.values():
-        found = _clock_places(scene, result)
+        found = _clock_places(scene, result, CLOCK_NUMBER)
         if found is None:
             continue
         readings, places, across, step = found
@@ -147,7 +153,7 @@ def clock_numbers(scene: Scene) -> Iterator[ClockNumber]:
 
 def _clock_ticks(scene: Scene, result: WorldlineResult) -> Iterator[Stroke]:
     """Short strokes across a worldline at 1-2-5 readings of the carried clock."""
-    found = _clock_places(scene, result)
+    found = _clock_places(scene, result, CLOCK_TICK)
     if found is None:
         return
     for place, aside in zip(found[1], found[2], strict=True):
@@ -162,16 +168,19 @@ def _clock_ticks(scene: Scene, result: WorldlineResult) -> Iterator[Stroke]:
 
 
 def _clock_places(
-    scene: Scene, result: WorldlineResult
+    scene: Scene, result: WorldlineResult, apart: float
 ) -> tuple[Points, Points, Points, float] | None:
-    """Readings at the ticks of a clock, their places, unit vectors across, and the step."""
+    """Round readings of a clock, at least ``apart`` points apart, and the step between them.
+
+    With them their places, and the unit vectors across the line there.
+    """
     span = visible_span(result.line, scene.chart, scene.window)
     if span is None:
         return None
     units, line = scene.resolved.units, result.line
     relative = float(line.rapidity(0.5 * sum(span))) - scene.view.frame.rapidity
     printed = scene.scale * math.sqrt(math.cosh(2.0 * relative))
-    step = units.from_reader(step_for(units.to_reader(CLOCK_TICK / printed, TIME)), TIME)
+    step = units.from_reader(step_for(units.to_reader(apart / printed, TIME)), TIME)
     readings = ticks_between(result.reading(span[0]), result.reading(span[1]), step)
     if readings.size == 0:
         return None
@@ -268,10 +277,10 @@ def body_fills(scene: Scene, body: BodyResult) -> Iterator[Fill]:
     lines = [end.line for end in body.ends]
     # lines that leave the window's diamond leave room at its tip: the tip belongs to the sheet
     if all(float(d[0][-1]) < line.end for d, line in zip(drawn, lines, strict=True) if d):
-        outline.append((centre + (0.0, half))[np.newaxis])
+        outline.append(np.array([[centre[0], centre[1] + half]]))
     outline.append(drawn[1][1][::-1])
     if all(float(d[0][0]) > line.start for d, line in zip(drawn, lines, strict=True) if d):
-        outline.append((centre - (0.0, half))[np.newaxis])
+        outline.append(np.array([[centre[0], centre[1] - half]]))
     inside = clip_polygon(np.vstack(outline), w)
     if len(inside) >= 3:
         yield Fill(source=body.id, role=Role.BODY, hue=body.ends[1].observer, points=inside)

@@ -51,7 +51,5 @@ def frame_hue(resolved: Resolved, frame: FrameResult) -> int:
     return len(resolved.worldlines) + number - 1
 
 
-
-
 def _alike(first: float, second: float) -> bool:
     return math.isclose(first, second, rel_tol=1e-12, abs_tol=1e-15)

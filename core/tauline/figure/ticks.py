@@ -30,7 +30,7 @@ def ticks_between(low: float, high: float, step: float) -> NDArray[np.float64]:
     first, last = math.ceil(low / step - 1e-9), math.floor(high / step + 1e-9)
     if last - first > MAX_TICKS:
         return np.empty(0)
-    return np.arange(first, last + 1) * step
+    return np.asarray(np.arange(first, last + 1) * step, dtype=float)
 
 
 def tick_text(value: float, step: float) -> str:

@@ -50,7 +50,8 @@ def default_view(
         raise UnknownIdError(f"there is no view '{view_id}'", f"there are: {known}")
     views = resolved.views
     named = views[view_id] if view_id is not None else next(iter(views.values()), None)
-    frame = _frame(resolved, frame_id if frame_id is not None else named and named.frame)
+    own_frame = None if named is None else named.frame
+    frame = _frame(resolved, own_frame if frame_id is None else frame_id)
     fitted = fit_window(resolved, frame)
     if named is None:
         return DiagramView(frame=frame, window=fitted)

@@ -38,11 +38,15 @@ class Meeting(NamedTuple):
 
 
 class Coefficients(NamedTuple):
-    """A quadratic in z; a coefficient within its rounding bound is set to 0."""
+    """A quadratic in z; a coefficient within its rounding bound is set to 0.
+
+    ``blur`` is the rounding bound of its discriminant.
+    """
 
     square: float
     linear: float
     constant: float
+    blur: float
 
 
 def meetings(first: Line, second: Line) -> tuple[Meeting, ...]:
@@ -63,7 +67,7 @@ def meetings(first: Line, second: Line) -> tuple[Meeting, ...]:
 
 def _leg_meetings(leg: Leg, other: Leg) -> list[Meeting]:
     quadratic = _quadratic(leg, other)
-    if quadratic == (0.0, 0.0, 0.0):
+    if quadratic[:3] == (0.0, 0.0, 0.0):
         return _shared_stretch(leg, other)
     found = []
     for z in _roots(quadratic):
@@ -96,12 +100,14 @@ def _quadratic(leg: Leg, other: Leg) -> Coefficients:
         abs(b) * size_u * size_v + c * size_u + d * size_v,
     )
     values = (square, linear, constant)
-    return Coefficients(
-        *(
-            0.0 if abs(value) <= ROUNDING * bound else value
-            for value, bound in zip(values, bounds, strict=True)
-        )
+    errors = [ROUNDING * bound for bound in bounds]
+    kept = [0.0 if abs(v) <= e else v for v, e in zip(values, errors, strict=True)]
+    blur = (
+        2.0 * abs(linear) * errors[1]
+        + 4.0 * (abs(square) * errors[2] + abs(constant) * errors[0])
+        + ROUNDING * (linear * linear + abs(4.0 * square * constant))
     )
+    return Coefficients(kept[0], kept[1], kept[2], blur)
 
 
 def _constants(leg: Leg) -> tuple[float, float, float]:
@@ -110,18 +116,17 @@ def _constants(leg: Leg) -> tuple[float, float, float]:
 
 def _roots(quadratic: Coefficients) -> list[float]:
     """Real roots, by the form that does not cancel (Numerical Recipes, 3rd ed., §5.6)."""
-    square, linear, constant = quadratic
+    square, linear, constant, blur = quadratic
     if square == 0.0:
         return [-constant / linear] if linear != 0.0 else []
     discriminant = linear * linear - 4.0 * square * constant
-    touching = ROUNDING * (linear * linear + abs(4.0 * square * constant))
-    if discriminant < -touching:
+    if discriminant < -blur:
         return []
-    half = -0.5 * (linear + math.copysign(math.sqrt(max(discriminant, 0.0)), linear))
-    roots = [half / square]
-    if half != 0.0 and discriminant > touching:
-        roots.append(constant / half)
-    return roots
+    if discriminant <= blur:
+        # the lines touch, as far as rounding lets one tell
+        return [-0.5 * linear / square]
+    half = -0.5 * (linear + math.copysign(math.sqrt(discriminant), linear))
+    return [half / square, constant / half]
 
 
 def _tau_of(leg: Leg, z: float) -> float:
@@ -132,8 +137,10 @@ def _tau_of(leg: Leg, z: float) -> float:
     tau = math.log1p(a * z) / a if a else z
     if math.isfinite(tau):
         u, v = np.abs(leg.point)
-        slack = 8 * ROUNDING * (
-            abs(tau) + u * math.exp(leg.start_rapidity) + v * math.exp(-leg.start_rapidity)
+        slack = (
+            8
+            * ROUNDING
+            * (abs(tau) + u * math.exp(leg.start_rapidity) + v * math.exp(-leg.start_rapidity))
         )
         clipped = min(max(tau, leg.start), leg.end)
         if abs(tau - clipped) <= slack:
@@ -173,7 +180,9 @@ def _merge(found: list[Meeting]) -> tuple[Meeting, ...]:
             or math.isclose(meeting.first, last.together_until, rel_tol=1e-9, abs_tol=0.0)
             or abs(meeting.second - last.second) <= 1e-12 * abs(last.second)
         ):
-            merged[-1] = last._replace(together_until=max(last.together_until, meeting.together_until))
+            merged[-1] = last._replace(
+                together_until=max(last.together_until, meeting.together_until)
+            )
         else:
             merged.append(meeting)
     return tuple(merged)

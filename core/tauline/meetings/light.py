@@ -74,7 +74,7 @@ def _meet(line: Worldline, points: Array, *, later: bool) -> LightMeeting:
 
 
 def _slack(points: Array) -> Array:
-    return ROUNDING * np.max(np.abs(points), axis=0)
+    return np.asarray(ROUNDING * np.max(np.abs(points), axis=0))
 
 
 def _caused_by(cause: Array, effect: Array) -> bool:

@@ -13,9 +13,7 @@ from tauline.spacetime import gamma
 from tauline.worldlines import Coast
 
 
-def body_readouts(
-    resolved: Resolved, body: BodyResult, frame: FrameResult
-) -> Iterator[Readout]:
+def body_readouts(resolved: Resolved, body: BodyResult, frame: FrameResult) -> Iterator[Readout]:
     """Length in the frame and proper length, where the ends coast at one velocity.
 
     Ends at (u₁, v₁), (u₂, v₂) with rapidity φ are |Δv e^{−φ} − Δu e^{φ}|/2 apart in their rest

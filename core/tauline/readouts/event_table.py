@@ -84,9 +84,7 @@ def chosen_frames(resolved: Resolved, ids: Sequence[str]) -> tuple[FrameResult, 
     known = resolved.frames | resolved.leg_frames
     missing = [frame_id for frame_id in ids if frame_id not in known]
     if missing:
-        raise UnknownIdError(
-            f"there is no frame '{missing[0]}'", "there are: " + ", ".join(known)
-        )
+        raise UnknownIdError(f"there is no frame '{missing[0]}'", "there are: " + ", ".join(known))
     return tuple(known[frame_id] for frame_id in ids)
 
 

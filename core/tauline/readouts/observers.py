@@ -57,7 +57,9 @@ def velocity_readouts(
     near_light = abs(relative) > 4.0
     if near_light:
         deficit = float(one_minus_beta(abs(relative)))
-        yield readout(units, f"1 − |velocity|{where}", "1 − β", deficit, VELOCITY, frame=frame.label)
+        yield readout(
+            units, f"1 − |velocity|{where}", "1 − β", deficit, VELOCITY, frame=frame.label
+        )
     else:
         value = float(beta(relative))
         yield readout(units, f"velocity{where}", "β", value, VELOCITY, frame=frame.label)
@@ -104,9 +106,11 @@ def two_observers(
     units = resolved.units
     names = f"{second.label or second.id} rel. to {first.label or first.id}"
     lines = cast(Line, first.line), cast(Line, second.line)
-    if all(len(legs_of(line)) == 1 and not legs_of(line)[0][1].proper_acceleration for line in lines):
-        tau = [min(max(0.0, line.start), line.end) for line in lines]
-        relative = float(lines[1].rapidity(tau[1])) - float(lines[0].rapidity(tau[0]))
+    if all(
+        len(legs_of(line)) == 1 and not legs_of(line)[0][1].proper_acceleration for line in lines
+    ):
+        rapidities = [float(legs_of(line)[0][1].start_rapidity) for line in lines]
+        relative = rapidities[1] - rapidities[0]
         yield _relative(units, f"velocity of {names}", relative)
         yield Readout(
             name="Doppler factor, receding | approaching",
@@ -118,11 +122,11 @@ def two_observers(
             ),
             working=Working("D = e^(∓φ)", DOPPLER, f"φ = {format_number(abs(relative), 6)}"),
         )
-        closing = float(np.tanh(second.line.rapidity(tau[1]) - frame.rapidity)) - float(
-            np.tanh(first.line.rapidity(tau[0]) - frame.rapidity)
+        closing = math.tanh(rapidities[1] - frame.rapidity) - math.tanh(
+            rapidities[0] - frame.rapidity
         )
         yield readout(
-            units, "rate of change of their distance", "Δẋ", closing, VELOCITY, frame=frame.label
+            units, "difference of their velocities", "Δv", closing, VELOCITY, frame=frame.label
         )
         return
     for number, meeting in enumerate(meetings(*lines), start=1):
@@ -132,7 +136,9 @@ def two_observers(
         for result, tau in ((first, meeting.first), (second, meeting.second)):
             label = result.label or result.id
             yield readout(units, f"clock of {label}{where}", "τ", result.reading(tau), TIME)
-        relative = float(lines[1].rapidity(meeting.second)) - float(lines[0].rapidity(meeting.first))
+        relative = float(lines[1].rapidity(meeting.second)) - float(
+            lines[0].rapidity(meeting.first)
+        )
         yield _relative(units, f"velocity of {names}{where}", relative)
     yield Readout(
         name="relative velocity elsewhere",

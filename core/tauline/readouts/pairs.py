@@ -10,7 +10,7 @@ import numpy as np
 from tauline.charts.inertial import InertialChart
 from tauline.readouts.readout import Readout, Working, format_number, readout
 from tauline.resolve.results import EventResult, FrameResult, Resolved, WorldlineResult
-from tauline.scenario.units import LENGTH, NUMBER, TIME, VELOCITY
+from tauline.scenario.units import LENGTH, TIME, VELOCITY
 from tauline.spacetime import IntervalClass, beta, classify, doppler_factor, gamma, order
 
 BOOST = "Rindler, Relativity, 2nd ed., §2.6 (section from memory)"
@@ -19,9 +19,7 @@ COMPOSITION = "Rindler, Relativity, 2nd ed., §3.6 (section from memory)"
 DOPPLER = "Rindler, Relativity, 2nd ed., §4.3 (section from memory)"
 
 
-def event_readouts(
-    resolved: Resolved, event: EventResult, frame: FrameResult
-) -> Iterator[Readout]:
+def event_readouts(resolved: Resolved, event: EventResult, frame: FrameResult) -> Iterator[Readout]:
     """Coordinates in the frame, and what the clocks there read."""
     units = resolved.units
     t, x = coordinates(event, frame)
@@ -46,24 +44,18 @@ def pair_readouts(
     yield readout(units, "distance along x", "Δx", x2 - x1, LENGTH, frame=frame.label)
     du, dv = (float(step) for step in second.point - first.point)
     kind = classify(first.point, second.point)
-    yield Readout(
-        name="interval class", symbol="", number=None, unit="", note=describe(kind)
-    )
-    working = Working(
-        "s² = Δt² − Δx² = Δu Δv", INTERVAL, f"Δu = {_short(du)}, Δv = {_short(dv)}"
-    )
+    yield Readout(name="interval class", symbol="", number=None, unit="", note=describe(kind))
+    working = Working("s² = Δt² − Δx² = Δu Δv", INTERVAL, f"Δu = {_short(du)}, Δv = {_short(dv)}")
     if kind is IntervalClass.TIMELIKE:
         yield readout(
             units, "proper time, straight", "Δτ", math.sqrt(du * dv), TIME, working=working
         )
         yield from _singled_out(resolved, "at one place", 0.5 * math.log(dv / du), frame)
     elif kind is IntervalClass.SPACELIKE:
-        yield readout(
-            units, "proper distance", "σ", math.sqrt(-du * dv), LENGTH, working=working
-        )
+        yield readout(units, "proper distance", "σ", math.sqrt(-du * dv), LENGTH, working=working)
         yield from _singled_out(resolved, "simultaneous", 0.5 * math.log(-dv / du), frame)
     for line in resolved.worldlines.values():
-        yield from _along(resolved, line, first, second, frame)
+        yield from _along(resolved, line, first, second)
     yield from _between_observers(resolved, first, second, kind)
 
 
@@ -114,7 +106,6 @@ def _along(
     line: WorldlineResult,
     first: EventResult,
     second: EventResult,
-    frame: FrameResult,
 ) -> Iterator[Readout]:
     """Proper time elapsed along a worldline on which both events lie."""
     readings = [
@@ -172,9 +163,7 @@ def _between_observers(
                         yield _doppler(first, second, relative, note)
 
 
-def _doppler(
-    first: EventResult, second: EventResult, relative: float, note: str
-) -> Readout:
+def _doppler(first: EventResult, second: EventResult, relative: float, note: str) -> Readout:
     du, dv = np.abs(second.point - first.point)
     towards = 1.0 if du < dv else -1.0
     earlier = order(first.point, second.point)

@@ -43,9 +43,7 @@ def pulses_readouts(
 ) -> Iterator[Readout]:
     """How many pulses were sent and received by a time of the frame (internal units)."""
     sent = [s for s in pulses.signals if s.sent and coordinates(s.sent, frame)[0] <= frame_time]
-    received = [
-        s for s in sent if s.received and coordinates(s.received, frame)[0] <= frame_time
-    ]
+    received = [s for s in sent if s.received and coordinates(s.received, frame)[0] <= frame_time]
     missed = [s for s in sent if s.received is None]
     counts = (
         ("sent", len(sent)),

@@ -132,7 +132,7 @@ class Context:
     def point(self, t: float, x: float, frame: FrameResult) -> Point:
         """The event at t′, x′ (internal units) of a frame."""
         stretch = math.exp(frame.rapidity)
-        return frame.origin + np.array([(t - x) / stretch, (t + x) * stretch])
+        return np.add(frame.origin, ((t - x) / stretch, (t + x) * stretch))
 
     def coordinates(self, point: Point, frame: FrameResult) -> tuple[float, float]:
         """Coordinates t′, x′ (internal units) of an event in a frame."""
@@ -241,9 +241,7 @@ class Context:
                 tau = ends[index]
             case _:
                 return None
-        return EventResult(
-            id=f"{owner}.{member}", label="", point=line.event(tau), owner=owner
-        )
+        return EventResult(id=f"{owner}.{member}", label="", point=line.event(tau), owner=owner)
 
 
 def _light_event(made: object, event_id: str, key: str) -> EventResult | None:
@@ -271,9 +269,7 @@ def leg_ends(line: Line, *, endless_past: bool) -> tuple[float, ...]:
     """Proper times at which the author's legs end."""
     if not isinstance(line, Chain):
         return (line.end,)
-    ends = tuple(
-        offset + leg.end for offset, leg in zip(line.offsets, line.legs, strict=True)
-    )
+    ends = tuple(offset + leg.end for offset, leg in zip(line.offsets, line.legs, strict=True))
     return ends[1:] if endless_past else ends
 
 

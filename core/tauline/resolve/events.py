@@ -22,6 +22,9 @@ from tauline.scenario.objects import (
 from tauline.scenario.units import LENGTH, TIME
 from tauline.worldlines.span import within
 
+MAX_COORDINATE = 1e150
+"""Beyond it the square of an interval leaves the range of numbers."""
+
 
 def event(context: Context, thing: Event) -> EventResult:
     """Work out where an event is."""
@@ -39,6 +42,12 @@ def event(context: Context, thing: Event) -> EventResult:
             point = _by_meeting(context, thing)
         case SimultaneousEvent():
             point = _by_simultaneity(context, thing)
+    if not np.all(np.abs(point) <= MAX_COORDINATE):
+        raise Fault(
+            "",
+            "it is too far away to be reckoned with",
+            f"t ± x in the base frame goes up to {MAX_COORDINATE:g} {context.units.time}",
+        )
     return EventResult(id=thing.id, label=thing.label, point=point)
 
 

@@ -106,17 +106,18 @@ def _coast_duration(
         frame = context.frame(until.frame, f"{key}.frame")
     if until.time is not None:
         time = context.quantity(until.time, TIME, f"{key}.time")
-        tau = endless.tau_on_plane(context.point(time, 0.0, frame), frame.rapidity)
-        return f"{key}.time", float(tau)
+        tau = float(endless.tau_on_plane(context.point(time, 0.0, frame), frame.rapidity))
+        return f"{key}.time", tau
     if until.x is not None:
         goal = context.quantity(until.x, LENGTH, f"{key}.x")
         here = context.coordinates(now.point, frame)[1]
         pace = math.sinh(now.rapidity - frame.rapidity)
         if pace == 0.0 or (goal - here) / pace <= 0.0:
+            speed = math.tanh(now.rapidity - frame.rapidity)
             raise Fault(
                 f"{key}.x",
                 f"this leg never gets to x = {context.place(goal)}: it starts at"
-                f" x = {context.place(here)} and moves at {math.tanh(now.rapidity - frame.rapidity):.6g} c",
+                f" x = {context.place(here)} and moves at {speed:.6g} c",
                 f"in the frame '{frame.id}'",
             )
         return f"{key}.x", (goal - here) / pace
@@ -148,9 +149,7 @@ def _until_meeting(context: Context, other: str, endless: Coast, key: str) -> fl
     raise Fault(key, f"this leg never meets '{other}' after it has begun")
 
 
-def _until_reading(
-    context: Context, reading: float | str, now: _Traveller, key: str
-) -> float:
+def _until_reading(context: Context, reading: float | str, now: _Traveller, key: str) -> float:
     if now.start_reading is None:
         raise Fault(
             key,

@@ -35,8 +35,8 @@ def signal(context: Context, thing: Signal) -> SignalResult:
     source = context.event(thing.source, "from")
     if thing.to is None:
         towards = 1 if thing.direction == "+x" else -1
-        side = "+x" if towards > 0 else "−x"
-        made = _result(thing, source, None, towards, f"it goes off towards {side}")
+        name = "+x" if towards > 0 else "−x"
+        made = _result(thing, source, None, towards, f"it goes off towards {name}")
         return msgspec.structs.replace(made, sent_off=True)
     if not to_line:
         return _between(thing, source, context.event(thing.to, "to"))
@@ -81,9 +81,7 @@ def pulses(context: Context, thing: Pulses) -> PulsesResult:
         name = f"{thing.id}.{k + 1}"
         sent = EventResult(id=f"{name}.sent", label="", point=points[:, k], owner=thing.id)
         lost = bool(np.isnan(found[k]))
-        received = (
-            None if lost else _made(f"{name}.received", receiver, float(found[k]), thing.id)
-        )
+        received = None if lost else _made(f"{name}.received", receiver, float(found[k]), thing.id)
         reason = why_no_reception(receiver, points[:, k]) if lost else ""
         side = (1 if _lies_ahead(receiver, sent) else -1) if lost else int(towards[k])
         signals.append(

@@ -67,7 +67,7 @@ def _clock_offset(context: Context, thing: Worldline, line: Line) -> float:
             return reads
         if math.isinf(line.start):
             raise Fault(
-                "clock.at", "this worldline has no start", "name an event on it: at = \"EVENT\""
+                "clock.at", "this worldline has no start", 'name an event on it: at = "EVENT"'
             )
         return reads - line.start
     event = context.event(clock.at, "clock.at")
@@ -86,9 +86,7 @@ def _cut(context: Context, line: Coast, start: LineEnd | None, end: LineEnd | No
     if start is None:
         return msgspec.structs.replace(line, end=last)
     exact = context.event(start, "start").point if isinstance(start, str) else line.event(first)
-    return Coast(
-        point=exact, start_rapidity=line.start_rapidity, start=0.0, end=last - first
-    )
+    return Coast(point=exact, start_rapidity=line.start_rapidity, start=0.0, end=last - first)
 
 
 def _tau_of_end(context: Context, line: Coast, end: LineEnd, key: str) -> float:
@@ -129,9 +127,7 @@ def rapidity_of(
 ) -> tuple[float, FrameResult | None]:
     """Rapidity of the frame whose simultaneity is meant: a named one or an observer's."""
     if (frame is None) == (observer is None):
-        raise Fault(
-            "frame", "simultaneity is that of one frame", "give either frame or observer"
-        )
+        raise Fault("frame", "simultaneity is that of one frame", "give either frame or observer")
     if observer is None:
         named = context.frame(frame, "frame")
         return named.rapidity, named

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterator, Mapping
+from collections.abc import Callable, Iterator, Mapping
 from functools import partial
 from itertools import chain
 from typing import Any, TypeVar, cast
@@ -29,12 +29,9 @@ from tauline.scenario.expression import evaluate_parameters
 from tauline.scenario.objects import (
     Body,
     Broken,
-    CoastLine,
     Frame,
-    Itinerary,
     LightCone,
     Pulses,
-    RestLine,
     Signal,
     Simultaneity,
     View,
@@ -100,32 +97,16 @@ def _numbered(old: Mapping[Node, Outcome], observers: dict[str, int]) -> dict[No
     }
 
 
-def _build(context: Context, observers: dict[str, int], node: Node) -> Any:
+def _build(context: Context, observers: dict[str, int], node: Node) -> object:
     what, name = node
     thing = context.objects[name]
-    match thing:
-        case RestLine() | CoastLine() | Itinerary():
-            if what == "path":
-                return lines.path(context, thing)
-            return lines.worldline(context, thing, observers[name])
-        case Frame():
-            return _frame(context, thing)
-        case Signal():
-            return light.signal(context, thing)
-        case Pulses():
-            return light.pulses(context, thing)
-        case Simultaneity():
-            return surfaces.simultaneity(context, thing)
-        case LightCone():
-            return surfaces.light_cone(context, thing)
-        case Body():
-            return surfaces.body(context, thing)
-        case View():
-            return surfaces.view(context, thing)
-        case Broken():
-            raise AssertionError("a broken table is never worked out")
-        case _:
-            return events.event(context, thing)
+    if isinstance(thing, LINES):
+        if what == "path":
+            return lines.path(context, thing)
+        return lines.worldline(context, thing, observers[name])
+    # events come in several forms, all other kinds in one
+    builder = BUILDERS.get(type(thing), events.event)
+    return builder(context, thing)
 
 
 def _frame(context: Context, thing: Frame) -> FrameResult:
@@ -135,13 +116,26 @@ def _frame(context: Context, thing: Frame) -> FrameResult:
         return context.base
     relative = context.frame(thing.relative_to, "relative_to")
     rapidity = context.rapidity(thing, "", relative)
-    origin = relative.origin if thing.origin is None else context.event(thing.origin, "origin").point
+    origin = (
+        relative.origin if thing.origin is None else context.event(thing.origin, "origin").point
+    )
     return FrameResult(
         id=thing.id,
         label=thing.label or thing.id,
         rapidity=relative.rapidity if rapidity is None else rapidity,
         origin=origin,
     )
+
+
+BUILDERS: dict[type, Callable[[Context, Any], object]] = {
+    Frame: _frame,
+    Signal: light.signal,
+    Pulses: light.pulses,
+    Simultaneity: surfaces.simultaneity,
+    LightCone: surfaces.light_cone,
+    Body: surfaces.body,
+    View: surfaces.view,
+}
 
 
 def _assemble(
@@ -183,9 +177,7 @@ def _assemble(
         light_cones=_of(LightConeResult, made),
         bodies=_of(BodyResult, made),
         views=_of(ViewResult, made),
-        states={
-            thing.id: _state(outcomes.get(thing.id)) for thing in scenario.objects
-        },
+        states={thing.id: _state(outcomes.get(thing.id)) for thing in scenario.objects},
         diagnoses=(*faults, *_diagnoses(scenario, outcomes)),
         memo=context.memo.outcomes,
     )

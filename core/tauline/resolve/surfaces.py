@@ -18,9 +18,7 @@ from tauline.scenario.units import LENGTH, TIME, Dimension
 def simultaneity(context: Context, thing: Simultaneity) -> SimultaneityResult:
     """Work out the slope of a simultaneity line."""
     origin = context.event(thing.through, "through")
-    rapidity, frame = rapidity_of(
-        context, origin.point, thing.frame, thing.observer, thing.side
-    )
+    rapidity, frame = rapidity_of(context, origin.point, thing.frame, thing.observer, thing.side)
     return SimultaneityResult(
         id=thing.id,
         label=thing.label,

@@ -112,4 +112,4 @@ def _asinh_step(base: Array, step: Array) -> Array:
     same = (p * q > 0.0) & (total != 0.0)
     safe = np.where(same, total, 1.0)
     # p + q first divided, then multiplied: neither p² nor step·p may overflow
-    return np.arcsinh(np.where(same, step * ((p + q) / safe), p * root_q - q * root_p))
+    return np.asarray(np.arcsinh(np.where(same, step * ((p + q) / safe), p * root_q - q * root_p)))

@@ -82,9 +82,7 @@ class Chain(msgspec.Struct, frozen=True, kw_only=True):
         passed = np.zeros(at.shape[1:], dtype=np.intp)
         for u, v in self._joints().T:
             passed += (at[0] - u) * grow + (at[1] - v) * shrink >= 0.0
-        return self._found(
-            passed, lambda leg, here: leg.tau_on_plane(at[:, here], frame[here])
-        )
+        return self._found(passed, lambda leg, here: leg.tau_on_plane(at[:, here], frame[here]))
 
     def samples(self, first: float, last: float, tolerance: float, rapidity: float) -> Array:
         """See :meth:`Worldline.samples`; every joint is among them."""

@@ -19,4 +19,6 @@ def within(tau: Array, slack: Array, start: float, end: float) -> Array:
     """
     clipped = np.clip(tau, start, end)
     with np.errstate(invalid="ignore"):
-        return np.where(np.abs(tau - clipped) <= slack, clipped, np.where(tau == clipped, tau, np.nan))
+        return np.where(
+            np.abs(tau - clipped) <= slack, clipped, np.where(tau == clipped, tau, np.nan)
+        )
