@@ -114,7 +114,7 @@ def names_in(value: Value) -> frozenset[str]:
 
 
 def fault_of_parameter_name(name: str) -> QuantityError | None:
-    """What is wrong with the name of a parameter; None if nothing is."""
+    """Say what is wrong with the name of a parameter; None if nothing is."""
     if not is_name(name):
         return QuantityError(
             f"'{name}' cannot be the name of a parameter",
@@ -140,9 +140,8 @@ def evaluate_parameters(
     values = {parameter.name: parameter.value for parameter in scenario.parameters}
     needs = {name: names_in(value) & values.keys() for name, value in values.items()}
     users: dict[str, list[str]] = {name: [] for name in values}
-    for name, needed in needs.items():
-        for other in needed:
-            users[other].append(name)
+    for user, other in [(user, other) for user, needed in needs.items() for other in needed]:
+        users[other].append(user)
     missing = {name: len(needed) for name, needed in needs.items()}
     known: dict[str, Quantity] = {}
     faults: dict[str, Diagnosis] = {}
@@ -154,20 +153,24 @@ def evaluate_parameters(
             faults[name] = _consequence(name, faulty)
         else:
             try:
-                wrong = fault_of_parameter_name(name)
-                if wrong is not None:
-                    raise wrong
-                known[name] = evaluate(values[name], units, known, None)
+                known[name] = _parameter(name, values[name], units, known)
             except QuantityError as error:
                 faults[name] = _fault(name, error.message, error.hint)
         for user in users[name]:
             missing[user] -= 1
             if not missing[user]:
                 ready.append(user)
-    for name in values:
-        if missing[name] and name not in faults:
-            faults[name] = _in_a_cycle(name, needs, missing)
+    faults |= {name: _in_a_cycle(name, needs, missing) for name in values if missing[name]}
     return known, [faults[name] for name in values if name in faults]
+
+
+def _parameter(
+    name: str, value: Value, units: UnitSystem, known: Mapping[str, Quantity]
+) -> Quantity:
+    wrong = fault_of_parameter_name(name)
+    if wrong is not None:
+        raise wrong
+    return evaluate(value, units, known, None)
 
 
 def _in_a_cycle(
@@ -328,7 +331,9 @@ def _dimension(time: int, length: int, column: int) -> Dimension:
 
 def _power(base: Quantity, exponent: Quantity, column: int) -> Quantity:
     if exponent.dimension != NUMBER:
-        raise QuantityError(f"the exponent at column {column} is {exponent.dimension}, not a number")
+        raise QuantityError(
+            f"the exponent at column {column} is {exponent.dimension}, not a number"
+        )
     power = exponent.value
     dimension = NUMBER
     if base.dimension != NUMBER:
@@ -340,9 +345,7 @@ def _power(base: Quantity, exponent: Quantity, column: int) -> Quantity:
         if abs(power) > MAX_EXPONENT:
             raise QuantityError(f"the power of the unit at column {column} is too large")
         times = int(power)
-        dimension = _dimension(
-            base.dimension.time * times, base.dimension.length * times, column
-        )
+        dimension = _dimension(base.dimension.time * times, base.dimension.length * times, column)
     if base.value == 0.0 and power < 0.0:
         raise QuantityError(f"division by zero at column {column}")
     if base.value < 0.0 and power != int(power):
@@ -365,9 +368,7 @@ def _call(call: Call, arguments: list[Quantity]) -> Quantity:
         chosen = (min if name == "min" else max)(argument.value for argument in arguments)
         return Quantity(chosen, arguments[0].dimension)
     if len(arguments) != 1:
-        raise QuantityError(
-            f"'{name}' at column {column} takes one argument, not {len(arguments)}"
-        )
+        raise QuantityError(f"'{name}' at column {column} takes one argument, not {len(arguments)}")
     value, dimension = arguments[0]
     if name == "abs":
         return Quantity(abs(value), dimension)

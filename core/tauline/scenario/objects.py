@@ -40,6 +40,7 @@ FrameId = Annotated[str, _id_of("frame")]
 EventId = Annotated[str, _id_of("event")]
 WorldlineId = Annotated[str, _id_of("worldline")]
 PlaceId = Annotated[str, _id_of("event", "worldline")]
+EventOrStart = Annotated[str, msgspec.Meta(extra={"refers_to": ("event",), "words": ("start",)})]
 
 Side = Literal["before", "after"]
 Direction = Literal["+x", "-x"]
@@ -109,7 +110,7 @@ class Clock(msgspec.Struct, frozen=True, kw_only=True, omit_defaults=True):
     """The clock carried along a worldline shows ``reads`` at ``at``: an event, or ``start``."""
 
     reads: Time
-    at: EventId = "start"
+    at: EventOrStart = "start"
 
 
 class RestLine(Named, frozen=True, kw_only=True, omit_defaults=True):
@@ -352,16 +353,7 @@ class Broken(msgspec.Struct, frozen=True, kw_only=True):
 Worldline = RestLine | CoastLine | Itinerary
 Event = CoordinateEvent | ClockEvent | FrameTimeEvent | MeetingEvent | SimultaneousEvent
 Object = (
-    Frame
-    | Worldline
-    | Event
-    | Signal
-    | Pulses
-    | Simultaneity
-    | LightCone
-    | Body
-    | View
-    | Broken
+    Frame | Worldline | Event | Signal | Pulses | Simultaneity | LightCone | Body | View | Broken
 )
 
 

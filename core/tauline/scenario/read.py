@@ -2,26 +2,38 @@
 
 from __future__ import annotations
 
+import math
+import re
 import tomllib
-from difflib import get_close_matches
+from collections.abc import Iterator, Mapping
 from pathlib import Path
 from typing import Any, NamedTuple
 
 from tauline.errors import FileUnreadableError
 from tauline.scenario.diagnosis import Diagnosis
-from tauline.scenario.forms import FORMS, ID, build
-from tauline.scenario.objects import Broken, Frame, Object, Value
+from tauline.scenario.fields import with_article
+from tauline.scenario.forms import FORMS, broken, build, names_base
+from tauline.scenario.layout import Layout
+from tauline.scenario.objects import Broken, Frame, Object
+from tauline.scenario.paths import join
 from tauline.scenario.scenario import Parameter, Scenario, Units
-from tauline.scenario.source import Source, entries, locate
-from tauline.scenario.syntax import FUNCTIONS
+from tauline.scenario.source import Source, source_of
+from tauline.scenario.syntax import nearest
 from tauline.scenario.units import LENGTH, TIME, UNITS, Dimension
 
 FORMAT = 1
-"""Version of the file format this program writes, and the newest it reads."""
+"""Version of the file format that this program writes, and the newest it reads."""
 
 MAX_BYTES = 20_000_000
+MAX_NESTING = 32
+"""Tables and lists within one another."""
 
-START = "start it with 'tauline = 1', then the tables of the scenario"
+KEYS = ("tauline", "title", "description", "dimensions", "units", "parameters", *FORMS)
+"""What a file may have at its top level."""
+
+_START = "begin it with 'tauline = 1', then the tables of the scenario"
+_PLACE = re.compile(r" \(at (?:line (\d+), column (\d+)|end of document)\)$")
+_OBJECT = re.compile(r"([a-z]+)\[([0-9]+)\]")
 
 
 class Loaded(NamedTuple):
@@ -35,235 +47,303 @@ def read(path: Path | str) -> Loaded:
     """Read a scenario file.
 
     FileUnreadableError if nothing of it can be used: no such file, a folder, not text, not TOML,
-    or of a newer format. Any other fault is kept with the object that has it.
+    or of a newer format. Any other fault is kept with the object that has it, or in
+    :attr:`Scenario.faults`.
     """
     file = Path(path)
     return parse(_text_of(file), file)
 
 
 def parse(text: str, path: Path | None = None) -> Loaded:
-    """Read a scenario from its text; see :func:`read`."""
-    shown = path if path is not None else Path("scenario")
-    bare = text.removeprefix("\N{BYTE ORDER MARK}")
-    if not bare.strip():
-        raise FileUnreadableError(shown, "the file is empty", START)
-    try:
-        tables = tomllib.loads(bare.replace("\r\n", "\n"))
-    except tomllib.TOMLDecodeError as error:
-        raise _not_toml(shown, error, bare) from None
-    except RecursionError:
-        raise FileUnreadableError(shown, "brackets are nested too deeply to be read") from None
-    except ValueError as error:
-        # a number of thousands of digits is refused by Python itself
-        raise FileUnreadableError(shown, f"a value cannot be read: {error}") from None
-    _check_format(shown, tables)
-    faults: list[Diagnosis] = []
+    r"""Read a scenario from its text; see :func:`read`.
+
+    >>> parse('tauline = 1\n[[event]]\nid = "flash"\nt = 0\nx = 2').scenario.find("flash").x
+    2.0
+    """
+    file = path or Path("scenario")
+    tables = tables_of(text, file)
+    layout = Layout(text)
+    faults = _Faults()
     if "tauline" not in tables:
-        faults.append(_fault("tauline", "the format version is missing", START))
-    objects, names = _objects(tables, bare)
+        faults.add("tauline", "the version of the file format is missing", _START)
+    else:
+        _check_version(tables["tauline"], file, layout, faults)
+    for key in tables:
+        if key not in KEYS:
+            near = nearest(key, KEYS)
+            hint = f"did you mean '{near}'?" if near else "known: " + ", ".join(KEYS)
+            what = "table" if isinstance(tables[key], dict | list) else "key"
+            faults.add(join("", key), f"unknown {what} '{key}'", hint)
+    objects, ids = _objects(tables, layout, faults)
     scenario = Scenario(
-        title=_string(tables, "title", faults),
-        description=_string(tables, "description", faults).strip(),
+        title=_text(tables, "title", faults),
+        description=_text(tables, "description", faults),
         dimensions=_dimensions(tables, faults),
         units=_units(tables.get("units", {}), faults),
         parameters=_parameters(tables.get("parameters", {}), faults),
         objects=objects,
-        faults=(*_unknown(tables), *faults),
+        faults=tuple(faults.found),
     )
-    return Loaded(scenario, Source(path=path, text=text, lines=locate(bare, names)))
+    return Loaded(scenario, source_of(path, text, ids, layout))
+
+
+class _Faults:
+    """Collects the faults of the file outside its objects."""
+
+    def __init__(self) -> None:
+        self.found: list[Diagnosis] = []
+
+    def add(self, key: str, message: str, hint: str = "") -> None:
+        self.found.append(Diagnosis(object="", key=key, message=message, hint=hint))
+
+
+# --- from bytes to tables -----------------------------------------------------------------------
 
 
 def _text_of(file: Path) -> str:
     try:
         if file.is_dir():
             raise FileUnreadableError(file, "this is a folder", "name a scenario file in it")
+        if file.exists() and not file.is_file():
+            raise FileUnreadableError(file, "this is not a file")
         if file.stat().st_size > MAX_BYTES:
             raise FileUnreadableError(file, f"the file is larger than {MAX_BYTES // 10**6} MB")
         data = file.read_bytes()
     except FileNotFoundError:
         raise FileUnreadableError(file, "there is no such file") from None
+    except PermissionError:
+        raise FileUnreadableError(
+            file, "the file may not be read", "change its permissions"
+        ) from None
     except OSError as error:
-        reason = error.strerror or str(error)
-        raise FileUnreadableError(file, f"the file cannot be opened: {reason}") from None
-    except ValueError as error:
-        raise FileUnreadableError(file, f"this is not a file name: {error}") from None
+        raise FileUnreadableError(
+            file, f"the file cannot be read: {error.strerror or error}"
+        ) from None
+    except ValueError:
+        raise FileUnreadableError(file, "this is not the name of a file") from None
     if b"\0" in data:
-        raise FileUnreadableError(file, "this is a binary file, not a text", START)
+        raise FileUnreadableError(
+            file, "this is a binary file, not a text", "a scenario is a text file in TOML"
+        )
     try:
         return data.decode("utf-8")
     except UnicodeDecodeError as error:
-        line = data[: error.start].count(b"\n") + 1
+        line = data.count(b"\n", 0, error.start) + 1
         raise FileUnreadableError(
-            file, "this is not UTF-8 text", "save it as UTF-8", line=line
+            file, "this is not UTF-8 text", "save it as UTF-8", line
         ) from None
 
 
-def _not_toml(
-    file: Path, error: tomllib.TOMLDecodeError, text: str
-) -> FileUnreadableError:
-    message, _, place = str(error).partition(" (at ")
-    words = place.rstrip(")").replace(",", "").split()
-    if words[:1] == ["line"]:
-        line = int(words[1])
-    else:
-        line = text.count("\n") + 1
-    return FileUnreadableError(file, f"this is not valid TOML: {message[:1].lower()}{message[1:]}", line=line)
-
-
-def _check_format(file: Path, tables: dict[str, Any]) -> None:
-    version = tables.get("tauline", FORMAT)
-    if type(version) is not int or version < 1:
-        raise FileUnreadableError(file, f"{version!r} is not a format version", START)
-    if version > FORMAT:
+def tables_of(text: str, file: Path) -> dict[str, Any]:
+    """Return the tables of a TOML text; FileUnreadableError if it is not one."""
+    bare = text.removeprefix("\ufeff")
+    if not bare.strip():
+        raise FileUnreadableError(file, "the file is empty", _START)
+    try:
+        tables = tomllib.loads(bare)
+    except tomllib.TOMLDecodeError as error:
+        raise _not_toml(file, error, bare) from None
+    except RecursionError:
+        raise FileUnreadableError(file, "its lists are nested too deeply") from None
+    except ValueError:
+        # Python itself refuses to read a number of more than some thousands of digits
+        raise FileUnreadableError(file, "a number in it has too many digits") from None
+    if _nesting(tables) > MAX_NESTING:
         raise FileUnreadableError(
-            file,
-            f"the file has format {version}, this program reads up to {FORMAT}",
-            "it was written by a newer version of Tauline",
+            file, f"its tables and lists are nested more than {MAX_NESTING} deep"
         )
+    return tables
 
 
-def _objects(
-    tables: dict[str, Any], text: str
-) -> tuple[tuple[Object, ...], dict[tuple[str, int], str]]:
-    """All objects in the order of the file, and their ids by kind and index."""
-    order: dict[tuple[str, int], None] = {}
-    for entry in entries(text):
-        match entry.path:
-            case [str(kind), int(index), *_] if kind in FORMS:
-                order[kind, index] = None
-    for kind in FORMS:
-        listed = tables.get(kind, [])
-        for index in range(len(listed) if isinstance(listed, list) else 1):
-            order.setdefault((kind, index))
-    objects: list[Object] = []
-    names: dict[tuple[str, int], str] = {}
-    taken: dict[str, str] = {}
-    base = ""
-    for kind, index in order:
-        listed = tables.get(kind)
-        table = listed[index] if isinstance(listed, list) and index < len(listed) else listed
-        made = build(kind, index, table)
-        if made.id in taken:
-            made = _broken(
-                made, kind, index, table, "id", f"the id '{made.id}' is taken by a {taken[made.id]}"
-            )
-        elif isinstance(made, Frame) and _names_base(made):
-            if base:
-                message = f"'{base}' is the base frame already"
-                made = _broken(made, kind, index, table, "", message, "give it a velocity")
-            base = base or made.id
-        taken.setdefault(made.id, kind)
-        names[kind, index] = made.id
-        objects.append(made)
-    return tuple(objects), names
-
-
-def _broken(
-    made: Object, kind: str, index: int, table: dict[str, Any], key: str, message: str, hint: str = ""
-) -> Broken:
-    handle = f"{kind}[{index + 1}]" if key == "id" else made.id
-    hint = hint or "every id of a file is used once"
-    fault = Diagnosis(object=handle, key=key, message=message, hint=hint)
-    earlier = made.faults if isinstance(made, Broken) else ()
-    return Broken(
-        id=handle, kind=kind, table=dict(table), faults=(*earlier, fault), label=made.label
+def _not_toml(file: Path, error: tomllib.TOMLDecodeError, text: str) -> FileUnreadableError:
+    message = str(error)
+    place = _PLACE.search(message)
+    lines = text.splitlines() or [""]
+    number, column = len(lines), len(lines[-1]) + 1
+    if place is not None:
+        message = message[: place.start()]
+        if place[1]:
+            number, column = int(place[1]), int(place[2])
+    line = lines[number - 1] if number <= len(lines) else ""
+    hint = ""
+    if "Cannot declare" in message:
+        hint = "a kind of object begins with double brackets, as in [[event]], each time"
+    elif "Cannot overwrite" in message or "Cannot mutate" in message:
+        hint = "a key stands once in a table"
+    elif re.match(r"\s*\[{1,2}[^\]]*$", line):
+        hint = "a table begins with its name in brackets, as in [[event]]"
+    elif "=" in line and '"' not in line.partition("=")[2] and "'" not in line:
+        hint = 'a text, or a number with a unit, stands in quotes, as in velocity = "0.6 c"'
+    elif line.count('"') % 2:
+        hint = "a quote is missing"
+    return FileUnreadableError(
+        file,
+        f"{message[:1].lower()}{message[1:]}, at column {column}: not valid TOML",
+        hint,
+        number,
     )
 
 
-def _names_base(frame: Frame) -> bool:
-    given = (frame.velocity, frame.rapidity, frame.gamma, frame.one_minus_beta)
-    return frame.relative_to is None and all(value is None for value in given)
+def _nesting(value: object) -> int:
+    """Depth of tables and lists within one another, found without recursion."""
+    depth = 0
+    level: list[Any] = [value]
+    while level and depth <= MAX_NESTING:
+        depth += 1
+        inner: list[Any] = []
+        for part in level:
+            inner += part.values() if isinstance(part, dict) else part
+        level = [part for part in inner if isinstance(part, dict | list)]
+    return depth
 
 
-def _unknown(tables: dict[str, Any]) -> list[Diagnosis]:
-    known = ["tauline", "title", "description", "dimensions", "units", "parameters", *FORMS]
-    faults = []
-    for key in tables:
-        if key not in known:
-            near = get_close_matches(key, known, n=1)
-            hint = f"did you mean '{near[0]}'?" if near else "known: " + ", ".join(known)
-            faults.append(_fault(key, f"unknown key or table '{key}'", hint))
-    return faults
+def _check_version(version: object, file: Path, layout: Layout, faults: _Faults) -> None:
+    if isinstance(version, bool) or not isinstance(version, int) or version < 1:
+        faults.add("tauline", f"{version!r} is not a version of the file format", _START)
+    elif version > FORMAT:
+        raise FileUnreadableError(
+            file,
+            f"the file has format {version}; this program reads formats up to {FORMAT}",
+            "open it with a newer version of Tauline",
+            layout.lines.get("tauline"),
+        )
 
 
-def _string(tables: dict[str, Any], key: str, faults: list[Diagnosis]) -> str:
+# --- from tables to the document ----------------------------------------------------------------
+
+
+def _objects(
+    tables: Mapping[str, Any], layout: Layout, faults: _Faults
+) -> tuple[tuple[Object, ...], dict[str, str]]:
+    """All objects in the order of the file, and their ids by place (``worldline[2]``)."""
+    objects: list[Object] = []
+    ids: dict[str, str] = {}
+    taken: dict[str, str] = {}
+    base = ""
+    for kind in FORMS:
+        if not isinstance(tables.get(kind, []), list):
+            faults.add(kind, f"a {kind} is one of a list", f"begin each with [[{kind}]]")
+    for place, kind, table in object_tables(tables, layout):
+        if not isinstance(table, dict):
+            faults.add(place, f"a {kind} is a table", f"begin each with [[{kind}]]")
+            continue
+        made = build(kind, table, place)
+        if made.id in taken:
+            made = _with_fault(
+                made,
+                place,
+                Diagnosis(
+                    object=place,
+                    key="id",
+                    message=f"the id '{made.id}' is taken, by {with_article(taken[made.id])}",
+                    hint="every id of a file is used once",
+                ),
+                table,
+                kind,
+            )
+        elif isinstance(made, Frame) and names_base(made):
+            if base:
+                fault = Diagnosis(
+                    object=made.id,
+                    message=f"it has no velocity, but '{base}' is the base frame already",
+                    hint="give it a velocity, or relative_to",
+                )
+                made = _with_fault(made, made.id, fault, table, kind)
+            base = base or made.id
+        taken.setdefault(made.id, kind)
+        ids[place] = made.id
+        objects.append(made)
+    return tuple(objects), ids
+
+
+def object_tables(tables: Mapping[str, Any], layout: Layout) -> Iterator[tuple[str, str, object]]:
+    """Yield place (``worldline[2]``), kind and table of all objects, in the order of the file."""
+    for place in layout.lines:
+        match = _OBJECT.fullmatch(place)
+        if match is not None and match[1] in FORMS:
+            yield place, match[1], tables[match[1]][int(match[2]) - 1]
+
+
+def _with_fault(
+    made: Object, name: str, fault: Diagnosis, table: Mapping[str, Any], kind: str
+) -> Broken:
+    earlier = made.faults if isinstance(made, Broken) else ()
+    return broken(kind, table, name, (*_renamed(earlier, name), fault))
+
+
+def _renamed(faults: tuple[Diagnosis, ...], name: str) -> tuple[Diagnosis, ...]:
+    return tuple(
+        Diagnosis(object=name, key=fault.key, message=fault.message, hint=fault.hint)
+        for fault in faults
+    )
+
+
+def _text(tables: Mapping[str, Any], key: str, faults: _Faults) -> str:
     value = tables.get(key, "")
     if isinstance(value, str):
         return value
-    faults.append(_fault(key, "expected a text"))
+    faults.add(key, f"expected a text; this is {value!r}")
     return ""
 
 
-def _dimensions(tables: dict[str, Any], faults: list[Diagnosis]) -> int:
+def _dimensions(tables: Mapping[str, Any], faults: _Faults) -> int:
     value = tables.get("dimensions", 1)
-    if value != 1 or value is True:
-        faults.append(
-            _fault("dimensions", f"{value!r} is not supported", "this version knows 1: motion along x")
+    if isinstance(value, bool) or value != 1:
+        faults.add(
+            "dimensions",
+            f"{value!r} dimensions of space are not known to this version",
+            "it knows dimensions = 1: motion along x",
         )
     return 1
 
 
-def _units(table: object, faults: list[Diagnosis]) -> Units:
+def _units(table: object, faults: _Faults) -> Units:
     if not isinstance(table, dict):
-        faults.append(_fault("units", "expected a table", "start it with [units]"))
+        faults.add("units", "the units are a table", "begin it with [units]")
         return Units()
     for key in table:
-        if key not in ("time", "length"):
-            faults.append(_fault(f"units.{key}", f"unknown key '{key}'", "known: time, length"))
+        if key in ("time", "length"):
+            continue
+        near = nearest(key, ("time", "length"))
+        hint = f"did you mean '{near}'?" if near else "known: time, length"
+        faults.add(join("units", key), f"unknown key '{key}'", hint)
+    default = Units()
     return Units(
-        time=_unit(table, "time", TIME, "yr", faults),
-        length=_unit(table, "length", LENGTH, "ly", faults),
+        time=_unit(table.get("time", default.time), "time", TIME, default.time, faults),
+        length=_unit(table.get("length", default.length), "length", LENGTH, default.length, faults),
     )
 
 
-def _unit(
-    table: dict[str, Any], key: str, dimension: Dimension, default: str, faults: list[Diagnosis]
-) -> str:
-    name = table.get(key, default)
-    unit = UNITS.get(name) if isinstance(name, str) else None
-    if unit is not None and unit.dimension == dimension:
-        return str(name)
-    fitting = ", ".join(name for name, unit in UNITS.items() if unit.dimension == dimension)
-    faults.append(_fault(f"units.{key}", f"{name!r} is not a unit of {key}", f"known: {fitting}"))
+def _unit(name: object, key: str, dimension: Dimension, default: str, faults: _Faults) -> str:
+    fitting = [symbol for symbol, unit in UNITS.items() if unit.dimension == dimension]
+    if isinstance(name, str) and name in fitting:
+        return name
+    near = nearest(name, fitting) if isinstance(name, str) else ""
+    hint = f"did you mean '{near}'?" if near else "known: " + ", ".join(fitting)
+    faults.add(f"units.{key}", f"{name!r} is not a unit of {key}", hint)
     return default
 
 
-def _parameters(table: object, faults: list[Diagnosis]) -> tuple[Parameter, ...]:
+def _parameters(table: object, faults: _Faults) -> tuple[Parameter, ...]:
     if not isinstance(table, dict):
-        faults.append(_fault("parameters", "expected a table", "start it with [parameters]"))
+        faults.add("parameters", "the parameters are a table", "begin it with [parameters]")
         return ()
-    found = []
+    found: list[Parameter] = []
     for name, value in table.items():
-        key = f"parameters.{name}"
-        problem = _name_problem(name)
-        if problem:
-            faults.append(_fault(key, problem, "choose another name"))
-        elif isinstance(value, bool) or not isinstance(value, int | float | str):
-            faults.append(_fault(key, "expected a number or a text"))
+        if isinstance(value, str):
+            found.append(Parameter(name=name, value=value))
+        elif isinstance(value, bool) or not isinstance(value, int | float):
+            faults.add(
+                join("parameters", name), "expected a number or a text with a unit or an expression"
+            )
         else:
-            found.append(Parameter(name=name, value=_plain(value)))
+            # what is not finite stays, so that the parameter is known; evaluating it says so
+            found.append(Parameter(name=name, value=_float(value)))
     return tuple(found)
 
 
-def _plain(value: float | str) -> Value:
+def _float(number: float) -> float:
     try:
-        return value if isinstance(value, str) else float(value)
+        return float(number)
     except OverflowError:
-        return float("inf")
-
-
-def _name_problem(name: str) -> str:
-    if not name.isidentifier():
-        return f"'{name}' cannot be used in an expression"
-    if name in UNITS:
-        return f"'{name}' is a unit"
-    if name in FUNCTIONS or name in ("pi", "π"):
-        return f"'{name}' has a meaning of its own in expressions"
-    return ""
-
-
-def _fault(key: str, message: str, hint: str = "") -> Diagnosis:
-    return Diagnosis(object="", key=key, message=message, hint=hint)
-
-
-__all__ = ["FORMAT", "ID", "Loaded", "parse", "read"]
+        return math.inf if number > 0 else -math.inf

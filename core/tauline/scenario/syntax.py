@@ -96,7 +96,6 @@ class _Token(NamedTuple):
 
 
 _NUMBER = re.compile(r"(?:[0-9]+(?:\.[0-9]*)?|\.[0-9]+)(?:[eE][+\-−]?[0-9]+)?")
-_NAME = re.compile(r"(?:[^\W0-9²³¹⁰⁴-⁹])(?:[^\W²³¹⁰⁴-⁹])*")
 _SUPERSCRIPT = re.compile("[⁺⁻]?[⁰¹²³⁴-⁹]+")
 _FROM_SUPERSCRIPT = str.maketrans("⁺⁻⁰¹²³⁴⁵⁶⁷⁸⁹", "+-0123456789")
 _OPERATORS = {"−": "-", "·": "*", "⋅": "*", "×": "*", "**": "^"} | {c: c for c in "+-*/^(),"}
@@ -144,7 +143,7 @@ def nearest(name: str, names: Iterable[str]) -> str:
 
 def is_name(text: str) -> bool:
     """Whether a text is one name of an expression."""
-    return _NAME.fullmatch(text) is not None
+    return text.isidentifier() and "·" not in text
 
 
 def _tokens(text: str) -> list[_Token]:
@@ -164,9 +163,9 @@ def _tokens(text: str) -> list[_Token]:
         elif match := _NUMBER.match(text, at):
             tokens.append(_Token("number", match[0].replace("−", "-"), column))
             at = match.end()
-        elif match := _NAME.match(text, at):
-            tokens.append(_Token("name", match[0].replace("μ", "µ"), column))
-            at = match.end()
+        elif text[at].isidentifier():
+            at = _end_of_name(text, at)
+            tokens.append(_Token("name", text[column - 1 : at].replace("μ", "µ"), column))
         elif text[at : at + 2] in _OPERATORS:
             tokens.append(_Token("operator", _OPERATORS[text[at : at + 2]], column))
             at += 2
@@ -180,6 +179,14 @@ def _tokens(text: str) -> list[_Token]:
             )
     tokens.append(_Token("end", "", len(text) + 1))
     return tokens
+
+
+def _end_of_name(text: str, start: int) -> int:
+    end = start
+    # the raised dot of a product may stand within an identifier of Python
+    while end < len(text) and text[start : end + 1].isidentifier() and text[end] not in "·":
+        end += 1
+    return end
 
 
 class _Parser:
@@ -214,7 +221,7 @@ class _Parser:
         left = self._prefix(depth)
         while True:
             token = self.peek
-            if token.kind == "name" and self._ends_a_value() and _JUXTAPOSED > power:
+            if token.kind == "name" and self._ends_a_value() and power < _JUXTAPOSED:
                 right = self.expression(_JUXTAPOSED, depth + 1)
                 left = Binary("*", left, right, token.column)
             elif token.kind == "operator" and _POWERS.get(token.text, 0) > power:
@@ -263,7 +270,7 @@ class _Parser:
             )
         arguments = [self.expression(0, depth + 1)]
         while self._take(","):
-            arguments.append(self.expression(0, depth + 1))  # noqa: PERF401 - it reads tokens
+            arguments.append(self.expression(0, depth + 1))
         if not self._take(")"):
             raise _unexpected(self.peek, f"the bracket of '{token.text}' is not closed")
         return Call(token.text, tuple(arguments), token.column)
