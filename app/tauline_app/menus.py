@@ -34,7 +34,8 @@ KEYS = """<table cellpadding="3">
 <tr><td><b>Click</b></td><td>select; with Shift or Ctrl, one more; Esc lets go</td></tr>
 <tr><td><b>Arrow keys, + −</b></td><td>move and zoom</td></tr>
 <tr><td><b>F, Home</b></td><td>show everything; back to the opening view</td></tr>
-<tr><td><b>Velocity rail</b></td><td>drag it, click a flag, or ← → and Home</td></tr>
+<tr><td><b>Velocity rail</b></td><td>drag it, click a flag, or ← → and Home (base frame)</td></tr>
+<tr><td><b>Ctrl+C</b></td><td>copy readouts or the event table, with all digits</td></tr>
 </table>"""
 
 
@@ -59,7 +60,8 @@ class Menus:
         run: Callable[[], object],
         keys: Sequence[QKeySequence | QKeySequence.StandardKey | str] = (),
     ) -> QAction:
-        action = QAction(text, self._window)
+        # the menu's own, so that clearing a menu takes it away
+        action = QAction(text, menu)
         sequences = [QKeySequence(key) for key in keys]
         action.setShortcuts([sequence for sequence in sequences if not sequence.isEmpty()])
         action.triggered.connect(lambda: run())
@@ -92,7 +94,7 @@ class Menus:
         self._action(menu, "Copy &readouts", self._window.readouts.copy, ["Ctrl+Shift+C"])
         self._action(menu, "Copy event &table", self._window.events.copy, ["Ctrl+Alt+C"])
         menu.addSeparator()
-        self._action(menu, "Select &nothing", partial(session.select, ()))
+        self._action(menu, "Select &nothing", partial(session.select, ()), ["Ctrl+Shift+A"])
 
     def _view_menu(self, menu: QMenu) -> None:
         window, session = self._window, self._session

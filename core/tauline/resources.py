@@ -18,6 +18,6 @@ def resource(name: str) -> Path:
 
 
 def _shipped(name: str) -> Path:
-    """A wheel carries the folders inside the package; a checkout has them at its root."""
+    """Return a folder that ships: in the package of a wheel, at the root of a checkout."""
     inside = _PACKAGE / "_shipped" / name
     return inside if inside.is_dir() else _PACKAGE.parents[1] / name

@@ -7,6 +7,7 @@ from pathlib import Path
 
 import numpy as np
 import pytest
+
 from tauline.readouts import event_table, readouts_for
 from tauline.resolve import Resolved, resolve
 from tauline.resources import scenarios_folder
@@ -68,9 +69,7 @@ def test_who_calls_what_simultaneous(courier: Resolved) -> None:
         for name in ("now-at-brakes", "now-at-homeward")
     }
     assert on_station["now-at-brakes"] == pytest.approx(5 - 0.6 * 3, rel=1e-12)
-    assert on_station["now-at-homeward"] == pytest.approx(
-        STATION_AGE - (5 - 0.6 * 3), rel=1e-12
-    )
+    assert on_station["now-at-homeward"] == pytest.approx(STATION_AGE - (5 - 0.6 * 3), rel=1e-12)
 
 
 def test_greetings_and_the_answer(courier: Resolved) -> None:

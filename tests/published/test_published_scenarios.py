@@ -6,6 +6,7 @@ Each test names its source. "From memory" means that the source itself was not r
 from __future__ import annotations
 
 import pytest
+
 from tauline.readouts import event_table, readouts_for
 from tauline.resolve import Resolved, resolve
 from tauline.scenario.read import parse
@@ -59,7 +60,9 @@ def test_d8_canopus_and_back() -> None:
     E. F. Taylor & J. A. Wheeler, Spacetime Physics, 2nd ed. (1992), ch. 4 (from memory).
     """
     resolved = resolved_from(CANOPUS)
-    assert number(resolved, ("setting-out", "home"), "elapsed on earth") == pytest.approx(202, rel=1e-12)
+    assert number(resolved, ("setting-out", "home"), "elapsed on earth") == pytest.approx(
+        202, rel=1e-12
+    )
     assert number(resolved, ("setting-out", "home"), "elapsed on astronaut") == pytest.approx(
         40, rel=1e-12
     )

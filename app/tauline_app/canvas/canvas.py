@@ -82,7 +82,8 @@ class PointerBox(pg.ViewBox):  # type: ignore[misc]
 class Canvas(pg.GraphicsView):  # type: ignore[misc]
     """Shows the session's diagram and lets it be panned, zoomed and selected in."""
 
-    hovered = Signal(str)
+    pointed_at = Signal(object)
+    """A place ``(x, t)`` of the diagram under the pointer; None when it has left."""
 
     def __init__(self, session: Session, parent: QWidget | None = None) -> None:
         super().__init__(parent=parent, background=None)
@@ -97,12 +98,16 @@ class Canvas(pg.GraphicsView):  # type: ignore[misc]
         self.setFocusPolicy(Qt.FocusPolicy.StrongFocus)
         self.setAccessibleName("Spacetime diagram")
         self.setMinimumSize(240, 200)
+        # a file dropped here is for the window, and a graphics view would keep it
+        self.setAcceptDrops(False)
+        self.viewport().setAcceptDrops(False)
+        self.setMouseTracking(True)
         self.box.sigRangeChanged.connect(self._range_changed)
         self.box.clicked.connect(self._clicked)
         self.box.double_clicked.connect(self._double_clicked)
+        # a changed document comes with a changed view
         session.view_changed.connect(self.follow)
-        session.document_changed.connect(self.redraw)
-        session.selection_changed.connect(self.redraw)
+        session.selection_changed.connect(self.repaint_sheet)
         self.set_style(SCREEN_LIGHT)
 
     def set_style(self, style: Style) -> None:
@@ -188,6 +193,17 @@ class Canvas(pg.GraphicsView):  # type: ignore[misc]
         if self.drawing is not None and not thing_at(self.drawing, (x, t)):
             self._session.fit()
 
+    def mouseMoveEvent(self, event: Any) -> None:  # noqa: N802, ANN401 - Qt's
+        """Tell where the pointer is."""
+        super().mouseMoveEvent(event)
+        at = self.box.mapSceneToView(self.mapToScene(event.position().toPoint()))
+        self.pointed_at.emit((at.x(), at.y()))
+
+    def leaveEvent(self, event: Any) -> None:  # noqa: N802, ANN401 - Qt's
+        """Tell that the pointer is elsewhere."""
+        super().leaveEvent(event)
+        self.pointed_at.emit(None)
+
     def resizeEvent(self, event: Any) -> None:  # noqa: N802, ANN401 - Qt's
         """Keep the window in sight when the widget changes size."""
         self._following = True
@@ -218,6 +234,8 @@ class Canvas(pg.GraphicsView):  # type: ignore[misc]
             self.zoom(ZOOM_STEP)
         elif key == Qt.Key.Key_Minus:
             self.zoom(1.0 / ZOOM_STEP)
+        elif key == Qt.Key.Key_Home:
+            self._session.home()
         elif key == Qt.Key.Key_Escape:
             self._session.select(())
         else:

@@ -47,6 +47,7 @@ class Sheet:
         self._related = related
         self._selected = selected
         self._height = drawing.window.height * drawing.scale
+        self._colours: dict[tuple[Role, int, bool], QColor] = {}
         self._lines: dict[Look, list[QLineF]] = {}
         self._polygons: list[tuple[QBrush, QPolygonF]] = []
         self._heads: list[tuple[QBrush, QPolygonF]] = []
@@ -86,8 +87,12 @@ class Sheet:
         return self._related is not None and bool(source) and source not in self._related
 
     def _colour(self, role: Role, hue: int, dimmed: bool) -> QColor:
-        colour = self._style.colour(role, hue)
-        return qcolour(blend(colour, self._style.ground, DIMMED) if dimmed else colour)
+        look = (role, hue, dimmed)
+        if look not in self._colours:
+            colour = self._style.colour(role, hue)
+            mixed = blend(colour, self._style.ground, DIMMED) if dimmed else colour
+            self._colours[look] = qcolour(mixed)
+        return self._colours[look]
 
     def _pen(self, look: Look) -> QPen:
         role, hue, dimmed, selected = Role(look[0]), look[1], look[2], look[3]
@@ -107,11 +112,16 @@ class Sheet:
             self._polygons.append((QBrush(colour), _polygon(self.pixels(fill.points))))
 
     def _strokes(self) -> None:
-        for stroke in self._drawing.strokes:
+        strokes = self._drawing.strokes
+        if not strokes:
+            return
+        everything = self.pixels(np.concatenate([stroke.points for stroke in strokes]))
+        lengths = [len(stroke.points) for stroke in strokes]
+        parts = np.split(everything, np.cumsum(lengths)[:-1])
+        for stroke, points in zip(strokes, parts, strict=True):
             dimmed = self._is_dimmed(stroke.source)
             selected = bool(stroke.source) and stroke.source in self._selected
             look = (str(stroke.role), stroke.hue, dimmed, selected)
-            points = self.pixels(stroke.points)
             ends = points.tolist()
             self._lines.setdefault(look, []).extend(
                 QLineF(*here, *there) for here, there in pairwise(ends)
@@ -123,11 +133,12 @@ class Sheet:
                     self._heads.append((brush, _polygon(head)))
 
     def _labels(self) -> None:
-        for label in self._drawing.labels:
+        labels = self._drawing.labels
+        places = self.pixels(np.array([label.at for label in labels]).reshape(-1, 2))
+        for label, at in zip(labels, places.tolist(), strict=True):
             size = self._style.size(label.role)
-            at = self.pixels(np.asarray(label.at))
-            x = float(at[0]) + label.offset[0]
-            baseline = float(at[1]) - label.offset[1] - DESCENT * size
+            x = at[0] + label.offset[0]
+            baseline = at[1] - label.offset[1] - DESCENT * size
             colour = self._colour(label.role, label.hue, self._is_dimmed(label.source))
             for run in label.runs:
                 drop = SUB_DROP * size if run.style == "sub" else 0.0

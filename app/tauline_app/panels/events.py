@@ -14,7 +14,7 @@ from PySide6.QtCore import (
     QSignalBlocker,
     Qt,
 )
-from PySide6.QtGui import QGuiApplication, QKeyEvent, QKeySequence
+from PySide6.QtGui import QGuiApplication, QKeySequence, QShortcut
 from PySide6.QtWidgets import (
     QAbstractItemView,
     QComboBox,
@@ -143,6 +143,10 @@ class EventsPanel(QWidget):
         layout.setContentsMargins(8, 6, 8, 8)
         layout.addLayout(head)
         layout.addWidget(self.view, 1)
+        # ahead of the table's own key, which copies the one cell as it is shown
+        copy = QShortcut(QKeySequence(QKeySequence.StandardKey.Copy), self)
+        copy.setContext(Qt.ShortcutContext.WidgetWithChildrenShortcut)
+        copy.activated.connect(self.copy)
         session.document_changed.connect(self.rebuild)
         session.selection_changed.connect(self._follow)
         self.rebuild()
@@ -182,13 +186,6 @@ class EventsPanel(QWidget):
         data.setText(write_table(self.model.table, "tsv"))
         data.setHtml(write_table(self.model.table, "html"))
         QGuiApplication.clipboard().setMimeData(data)
-
-    def keyPressEvent(self, event: QKeyEvent) -> None:  # noqa: N802 - Qt's
-        """Copy by the standard key."""
-        if event.matches(QKeySequence.StandardKey.Copy):
-            self.copy()
-        else:
-            super().keyPressEvent(event)
 
     def _list_frames(self) -> None:
         resolved = self._session.resolved

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from PySide6.QtCore import Qt, Signal
+from PySide6.QtCore import Qt
 from PySide6.QtWidgets import (
     QAbstractItemView,
     QHeaderView,
@@ -23,8 +23,6 @@ WEIGHTS = {
 
 class ProblemsPanel(QTableWidget):
     """One row to a diagnosis; choosing it selects the object."""
-
-    counted = Signal(int)
 
     def __init__(self, session: Session, parent: QWidget | None = None) -> None:
         super().__init__(0, 4, parent)
@@ -65,7 +63,6 @@ class ProblemsPanel(QTableWidget):
                 cell.setToolTip(text)
                 self.setItem(row, column, cell)
         self.resizeRowsToContents()
-        self.counted.emit(len(self._session.resolved.faults))
 
     def _chosen(self) -> None:
         rows = {index.row() for index in self.selectedIndexes()}

@@ -2,8 +2,8 @@
 
 from __future__ import annotations
 
-from PySide6.QtCore import Qt
-from PySide6.QtGui import QPalette
+from PySide6.QtCore import QEvent, Qt
+from PySide6.QtGui import QKeyEvent, QKeySequence, QPalette
 from PySide6.QtWidgets import QFormLayout, QLabel, QLineEdit, QScrollArea, QWidget
 
 from tauline.resolve.relations import owner_of
@@ -11,6 +11,8 @@ from tauline.scenario.edit import Field, fields_of
 from tauline.scenario.objects import Broken, kind_of
 from tauline_app.actions.edits import change_field, change_parameter
 from tauline_app.session import Session
+
+StandardKey = QKeySequence.StandardKey
 
 
 class PropertiesPanel(QScrollArea):
@@ -112,6 +114,7 @@ class FieldLine(QLineEdit):
         self._owner = owner
         self._key = key
         self._value = ""
+        self._document_fault = ""
         self.fault = QLabel()
         self.fault.setWordWrap(True)
         self.fault.setVisible(False)
@@ -125,6 +128,7 @@ class FieldLine(QLineEdit):
             self.setText(value)
             self.setCursorPosition(0)
             self._value = value
+        self._document_fault = fault
         self._show_fault(fault)
 
     def commit(self) -> None:
@@ -140,6 +144,27 @@ class FieldLine(QLineEdit):
             self._show_fault(fault)
         else:
             self.setModified(False)
+
+    def event(self, event: QEvent) -> bool:
+        """Leave undo and redo to the document while nothing is being typed."""
+        if (
+            event.type() == QEvent.Type.ShortcutOverride
+            and isinstance(event, QKeyEvent)
+            and self.text().strip() == self._value
+            and any(event.matches(key) for key in (StandardKey.Undo, StandardKey.Redo))
+        ):
+            event.ignore()
+            return False
+        return super().event(event)
+
+    def keyPressEvent(self, event: QKeyEvent) -> None:  # noqa: N802 - Qt's
+        """Take back what was typed, by Esc."""
+        if event.key() == Qt.Key.Key_Escape:
+            self.setText(self._value)
+            self.setModified(False)
+            self._show_fault(self._document_fault)
+        else:
+            super().keyPressEvent(event)
 
     def _show_fault(self, fault: str) -> None:
         self.fault.setText(fault)

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from PySide6.QtCore import Qt
-from PySide6.QtGui import QGuiApplication, QKeyEvent, QKeySequence
+from PySide6.QtGui import QGuiApplication, QKeySequence, QShortcut
 from PySide6.QtWidgets import (
     QAbstractItemView,
     QHBoxLayout,
@@ -20,6 +20,7 @@ from tauline.readouts import Readout, readouts_for
 from tauline_app.session import Session
 
 VALUE_WIDTH, FRAME_WIDTH = 128, 82
+ROW_PADDING = 6
 HINT = "Select an event, a worldline or a signal; with Shift or Ctrl, a second one."
 
 
@@ -49,6 +50,10 @@ class ReadoutsPanel(QWidget):
         self.table.verticalHeader().hide()
         header = self.table.horizontalHeader()
         header.setDefaultAlignment(Qt.AlignmentFlag.AlignLeft | Qt.AlignmentFlag.AlignVCenter)
+        right = Qt.AlignmentFlag.AlignRight | Qt.AlignmentFlag.AlignVCenter
+        value_head = QTableWidgetItem("Value")
+        value_head.setTextAlignment(right)
+        self.table.setHorizontalHeaderItem(1, value_head)
         header.setMinimumSectionSize(60)
         header.setSectionResizeMode(0, QHeaderView.ResizeMode.Stretch)
         header.setSectionResizeMode(1, QHeaderView.ResizeMode.Interactive)
@@ -66,6 +71,10 @@ class ReadoutsPanel(QWidget):
         layout.addLayout(head)
         layout.addWidget(self._hint)
         layout.addWidget(self.table, 1)
+        # ahead of the table's own key, which copies the one cell as it is shown
+        copy = QShortcut(QKeySequence(QKeySequence.StandardKey.Copy), self)
+        copy.setContext(Qt.ShortcutContext.WidgetWithChildrenShortcut)
+        copy.activated.connect(self.copy)
         self._digits.valueChanged.connect(self._fill)
         session.selection_changed.connect(self.refresh)
         session.document_changed.connect(self.refresh)
@@ -92,13 +101,6 @@ class ReadoutsPanel(QWidget):
             text = "\n".join(f"{r.name}\t{r.full()}\t{r.unit}\t{r.frame}" for r in chosen)
         QGuiApplication.clipboard().setText(text)
 
-    def keyPressEvent(self, event: QKeyEvent) -> None:  # noqa: N802 - Qt's
-        """Copy by the standard key."""
-        if event.matches(QKeySequence.StandardKey.Copy):
-            self.copy()
-        else:
-            super().keyPressEvent(event)
-
     def _name(self, some_id: str) -> str:
         resolved = self._session.resolved
         event = resolved.events.get(some_id)
@@ -122,3 +124,5 @@ class ReadoutsPanel(QWidget):
                     )
                 self.table.setItem(row, column, cell)
         self.table.resizeRowsToContents()
+        for row in range(self.table.rowCount()):
+            self.table.setRowHeight(row, self.table.rowHeight(row) + ROW_PADDING)

@@ -30,6 +30,7 @@ from tauline.figure.labels import (
     segments_of,
 )
 from tauline.figure.measure import TextMeasure
+from tauline.figure.sheets import body_fills, light_cone_parts
 from tauline.figure.strokes import Scene
 from tauline.figure.view import DiagramView
 from tauline.resolve.results import EventResult, Resolved, SignalResult
@@ -96,11 +97,11 @@ def _behind(scene: Scene) -> tuple[list[Fill], list[Stroke]]:
     strokes: list[Stroke] = []
     if "light_cones" in scene.view.layers:
         for cone in scene.resolved.light_cones.values():
-            shades, edges = parts.light_cone_parts(scene, cone)
+            shades, edges = light_cone_parts(scene, cone)
             fills += shades
             strokes += edges
     for body in scene.resolved.bodies.values():
-        fills += parts.body_fills(scene, body)
+        fills += body_fills(scene, body)
     return fills, strokes
 
 

@@ -1,4 +1,4 @@
-"""The things of a scenario as strokes, fills and markers in a window."""
+"""The things of a scenario as strokes and markers in a window."""
 
 from __future__ import annotations
 
@@ -9,15 +9,13 @@ import msgspec
 import numpy as np
 
 from tauline.charts.inertial import InertialChart
-from tauline.figure.clip import clip_polygon, clip_polyline, clip_ray
-from tauline.figure.drawing import Fill, Marker, Points, Role, Stroke, Window
+from tauline.figure.clip import clip_polyline, clip_ray
+from tauline.figure.drawing import Marker, Points, Role, Stroke, Window
 from tauline.figure.symbols import frame_hue
 from tauline.figure.ticks import step_for, tick_text, ticks_between
 from tauline.figure.view import DiagramView
 from tauline.resolve.results import (
-    BodyResult,
     EventResult,
-    LightConeResult,
     Resolved,
     SignalResult,
     SimultaneityResult,
@@ -179,7 +177,7 @@ def _clock_places(
         return None
     units, line = scene.resolved.units, result.line
     relative = float(line.rapidity(0.5 * sum(span))) - scene.view.frame.rapidity
-    printed = scene.scale * math.sqrt(math.cosh(2.0 * relative))
+    printed = scene.scale * math.hypot(math.sinh(relative), math.cosh(relative))
     step = units.from_reader(step_for(units.to_reader(apart / printed, TIME)), TIME)
     readings = ticks_between(result.reading(span[0]), result.reading(span[1]), step)
     if readings.size == 0:
@@ -240,50 +238,6 @@ def simultaneity_strokes(scene: Scene, thing: SimultaneityResult) -> Iterator[St
         ends = [only[0], only[1]]
     if ends:
         yield Stroke(source=thing.id, role=Role.SIMULTANEITY, hue=hue, points=np.array(ends))
-
-
-def light_cone_parts(scene: Scene, thing: LightConeResult) -> tuple[list[Fill], list[Stroke]]:
-    """The shaded cone of an event and its edges."""
-    at = scene.place(thing.apex.point)
-    window = scene.window
-    reach = float(np.sum(np.abs(at))) + 2.0 * (
-        window.width + window.height + abs(window.x0) + abs(window.t0)
-    )
-    fills, edges = [], []
-    for part, sign in (("future", 1.0), ("past", -1.0)):
-        if thing.part not in (part, "both"):
-            continue
-        ends = at + sign * reach * np.array([[1.0, 1.0], [-1.0, 1.0]])
-        inside = clip_polygon(np.vstack([at, ends]), window)
-        if len(inside):
-            fills.append(Fill(source=thing.id, role=Role.LIGHT_CONE, points=inside))
-        for end in ends:
-            edges += [
-                Stroke(source=thing.id, role=Role.LIGHT_CONE_EDGE, points=piece)
-                for piece in clip_polyline(np.array([at, end]), window)
-            ]
-    return fills, edges
-
-
-def body_fills(scene: Scene, body: BodyResult) -> Iterator[Fill]:
-    """The sheet between two worldlines, as far as both exist."""
-    drawn = [curve(scene, end.line) for end in body.ends]
-    if drawn[0] is None or drawn[1] is None:
-        return
-    w = scene.window
-    outline = [drawn[0][1]]
-    centre = np.array([0.5 * (w.x0 + w.x1), 0.5 * (w.t0 + w.t1)])
-    half = 0.5 * (w.width + w.height)
-    lines = [end.line for end in body.ends]
-    # lines that leave the window's diamond leave room at its tip: the tip belongs to the sheet
-    if all(float(d[0][-1]) < line.end for d, line in zip(drawn, lines, strict=True) if d):
-        outline.append(np.array([[centre[0], centre[1] + half]]))
-    outline.append(drawn[1][1][::-1])
-    if all(float(d[0][0]) > line.start for d, line in zip(drawn, lines, strict=True) if d):
-        outline.append(np.array([[centre[0], centre[1] - half]]))
-    inside = clip_polygon(np.vstack(outline), w)
-    if len(inside) >= 3:
-        yield Fill(source=body.id, role=Role.BODY, hue=body.ends[1].observer, points=inside)
 
 
 def event_marker(scene: Scene, event: EventResult) -> Marker | None:

@@ -10,7 +10,7 @@ from typing import cast
 import numpy as np
 
 from tauline.errors import QuantityError
-from tauline.resolve.memo import Blocked, Fault, Memo
+from tauline.resolve.memo import Blocked, Failed, Fault, Memo
 from tauline.resolve.results import (
     EventResult,
     FrameResult,
@@ -187,6 +187,13 @@ class Context:
         if not isinstance(thing, LINES):
             raise self._wrong_kind(line_id, thing, key, "a worldline")
         return cast(Line, self._value("path", line_id, key))
+
+    def own_path(self, line_id: str) -> Line:
+        """Return the curve of the worldline being worked out; its faults are the worldline's."""
+        outcome = self.memo.outcome(("path", line_id))
+        if outcome.failure is not None:
+            raise Failed(outcome.failure)
+        return cast(Line, outcome.value)
 
     def worldline(self, line_id: str, key: str) -> WorldlineResult:
         """Return a worldline with its clock."""

@@ -10,7 +10,7 @@ import numpy as np
 from tauline.meetings import emissions, receptions, why_no_emission, why_no_reception
 from tauline.resolve.context import ROUNDING, Context, Line, tau_of
 from tauline.resolve.memo import Fault
-from tauline.resolve.results import EventResult, PulsesResult, SignalResult
+from tauline.resolve.results import EventResult, Point, PulsesResult, SignalResult
 from tauline.scenario.objects import Pulses, Signal
 from tauline.scenario.units import TIME
 
@@ -47,8 +47,9 @@ def signal(context: Context, thing: Signal) -> SignalResult:
         context.note(thing.id, "to", f"never received: {reason}")
         side = 1 if _lies_ahead(line, source) else -1
         return _result(thing, source, None, side, reason)
-    received = _made(f"{thing.id}.received", line, float(tau), thing.id)
-    return _result(thing, source, received, int(towards_array))
+    side = int(towards_array)
+    received = _made(f"{thing.id}.received", line, float(tau), thing.id, source.point, side)
+    return _result(thing, source, received, side)
 
 
 def pulses(context: Context, thing: Pulses) -> PulsesResult:
@@ -81,9 +82,13 @@ def pulses(context: Context, thing: Pulses) -> PulsesResult:
         name = f"{thing.id}.{k + 1}"
         sent = EventResult(id=f"{name}.sent", label="", point=points[:, k], owner=thing.id)
         lost = bool(np.isnan(found[k]))
-        received = None if lost else _made(f"{name}.received", receiver, float(found[k]), thing.id)
-        reason = why_no_reception(receiver, points[:, k]) if lost else ""
         side = (1 if _lies_ahead(receiver, sent) else -1) if lost else int(towards[k])
+        received = None
+        if not lost:
+            place = sent.point
+            end = f"{name}.received"
+            received = _made(end, receiver, float(found[k]), thing.id, place, side)
+        reason = why_no_reception(receiver, points[:, k]) if lost else ""
         signals.append(
             SignalResult(
                 id=name,
@@ -117,8 +122,9 @@ def _sent_from_line(context: Context, thing: Signal) -> SignalResult:
         context.note(thing.id, "from", f"never sent: {reason}")
         side = -1 if _lies_ahead(line, target) else 1
         return _result(thing, None, target, side, reason)
-    sent = _made(f"{thing.id}.sent", line, float(tau), thing.id)
-    return _result(thing, sent, target, int(towards))
+    side = int(towards)
+    sent = _made(f"{thing.id}.sent", line, float(tau), thing.id, target.point, side)
+    return _result(thing, sent, target, side)
 
 
 def _between(thing: Signal, source: EventResult, target: EventResult) -> SignalResult:
@@ -157,8 +163,17 @@ def _result(
     )
 
 
-def _made(event_id: str, line: Line, tau: float, owner: str) -> EventResult:
-    return EventResult(id=event_id, label="", point=line.event(tau), owner=owner)
+def _made(
+    event_id: str, line: Line, tau: float, owner: str, other: Point, towards: int
+) -> EventResult:
+    """The event at the far end of a ray from (or to) ``other``.
+
+    A ray keeps its u (towards +x) or its v exactly, so the interval is null by construction.
+    """
+    point = line.event(tau)
+    row = 0 if towards > 0 else 1
+    point[row] = other[row]
+    return EventResult(id=event_id, label="", point=point, owner=owner)
 
 
 def _tau_of_event(

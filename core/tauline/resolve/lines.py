@@ -41,7 +41,7 @@ def path(context: Context, thing: Worldline) -> Line:
 
 def worldline(context: Context, thing: Worldline, observer: int) -> WorldlineResult:
     """Set the clock of a worldline."""
-    line = context.path(thing.id, "")
+    line = context.own_path(thing.id)
     return WorldlineResult(
         id=thing.id,
         label=thing.label,

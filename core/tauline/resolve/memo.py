@@ -39,6 +39,10 @@ class Blocked(Exception):  # noqa: N818 - not an error of the program
         self.culprit = culprit
 
 
+MAX_DEPTH = 60
+"""How many nodes may be worked out one within the other."""
+
+
 class Failure(msgspec.Struct, frozen=True):
     """The outcome of a node that could not be worked out."""
 
@@ -46,6 +50,14 @@ class Failure(msgspec.Struct, frozen=True):
     message: str
     hint: str
     blocked: bool
+
+
+class Failed(Exception):  # noqa: N818 - not an error of the program
+    """Raised while a node is worked out: it fails just as another part of it did."""
+
+    def __init__(self, failure: Failure) -> None:
+        super().__init__(failure.message)
+        self.failure = failure
 
 
 class Outcome(msgspec.Struct, frozen=True):
@@ -98,11 +110,33 @@ class Memo:
             if node in self._active:
                 ring = list(self._active)[list(self._active).index(node) :]
                 raise Cycle(tuple(ring))
+            if len(self._active) >= MAX_DEPTH:
+                raise Deeper(node)
             known = self._reusable(node) or self._work_out(node)
             self.outcomes[node] = known
         if self._active:
             self._reading.nodes.append((node, known))
         return known
+
+    def settle(self, node: Node) -> Outcome:
+        """Return the outcome of a node, however long the chain of nodes it hangs on.
+
+        Python's own stack holds but so many; a node found too deep is worked out by itself first.
+        """
+        waiting = [node]
+        while waiting:
+            try:
+                self.outcome(waiting[-1])
+            except Deeper as deeper:
+                if deeper.node in waiting:
+                    ring = tuple(waiting[waiting.index(deeper.node) :])
+                    outcome = self._finish(deeper.node, Reading(), None, _ring_failure(ring))
+                    self.outcomes[deeper.node] = outcome
+                else:
+                    waiting.append(deeper.node)
+                continue
+            waiting.pop()
+        return self.outcomes[node]
 
     def parameter(self, name: str) -> Quantity | None:
         """Return a parameter's value (None where it has none), and write down that it was read."""
@@ -151,16 +185,12 @@ class Memo:
         except Blocked as blocked:
             message = f"waits for '{blocked.culprit}', which has a fault"
             failure = Failure(blocked.key, message, "", blocked=True)
+        except Failed as failed:
+            failure = failed.failure
         except Cycle as cycle:
             if node not in cycle.ring:
                 raise
-            names = " → ".join(dict.fromkeys(name for _, name in cycle.ring))
-            failure = Failure(
-                "",
-                f"refers to itself: {names} → {cycle.ring[0][1]}",
-                "place one of them by numbers, or by something outside this ring",
-                blocked=False,
-            )
+            failure = _ring_failure(cycle.ring)
             if node != cycle.ring[0]:
                 del self._active[node]
                 self.outcomes[node] = self._finish(node, reading, None, failure)
@@ -180,6 +210,24 @@ class Memo:
             failure=failure,
             notes=tuple(reading.notes),
         )
+
+
+def _ring_failure(ring: tuple[Node, ...]) -> Failure:
+    names = " → ".join(dict.fromkeys(name for _, name in ring))
+    return Failure(
+        "",
+        f"refers to itself: {names} → {ring[0][1]}",
+        "place one of them by numbers, or by something outside this ring",
+        blocked=False,
+    )
+
+
+class Deeper(Exception):  # noqa: N818 - not an error of the program
+    """Raised where nodes hang on one another too deeply: work this one out first."""
+
+    def __init__(self, node: Node) -> None:
+        super().__init__(node)
+        self.node = node
 
 
 class StaleMemo(Exception):  # noqa: N818 - not an error of the program

@@ -80,7 +80,7 @@ def _resolve(
         objects, parameters, partial(_build, context, observers), _numbered(old, observers)
     )
     outcomes = {
-        thing.id: context.memo.outcome(("object", thing.id))
+        thing.id: context.memo.settle(("object", thing.id))
         for thing in scenario.objects
         if not isinstance(thing, Broken)
     }

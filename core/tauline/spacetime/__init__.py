@@ -22,7 +22,13 @@ from tauline.spacetime.rapidity import (
     gamma_minus_one,
     one_minus_beta,
 )
-from tauline.spacetime.velocity import compose, compose_collinear, four_velocity
+from tauline.spacetime.velocity import (
+    compose,
+    compose_collinear,
+    four_velocity,
+    relative_rapidity,
+    relative_velocity,
+)
 
 __all__ = [
     "IntervalClass",
@@ -48,6 +54,8 @@ __all__ = [
     "order",
     "proper_distance",
     "proper_time",
+    "relative_rapidity",
+    "relative_velocity",
     "rotate",
     "to_lightcone",
 ]

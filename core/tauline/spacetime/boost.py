@@ -24,11 +24,7 @@ def boost(coordinates: ArrayLike, rapidity: ArrayLike) -> Array:
     """
     rows = as_rows(coordinates)
     phi = np.asarray(rapidity, dtype=float)
-    u, v = rows[0] * np.exp(phi), rows[1] * np.exp(-phi)
-    result = np.empty((rows.shape[0], *np.shape(u)))
-    result[0], result[1] = u, v
-    result[2:] = np.broadcast_to(rows[2:], result[2:].shape)
-    return result
+    return np.stack(np.broadcast_arrays(rows[0] * np.exp(phi), rows[1] * np.exp(-phi), *rows[2:]))
 
 
 def boost_along(coordinates: ArrayLike, rapidity: float, direction: ArrayLike) -> Array:
@@ -43,18 +39,27 @@ def boost_along(coordinates: ArrayLike, rapidity: float, direction: ArrayLike) -
     unit = np.asarray(direction, dtype=float)
     if unit.shape != (rows.shape[0] - 1,):
         raise ValueError(f"the direction must have {rows.shape[0] - 1} components")
-    if abs(float(unit @ unit) - 1.0) > 1e-12:
+    if not abs(float(unit @ unit) - 1.0) <= 1e-12:
         raise ValueError("the direction must be a unit vector")
     if unit.size == 1:
         return boost(rows, rapidity * unit[0])
-    time = 0.5 * (rows[0] + rows[1])
-    space = np.concatenate([0.5 * (rows[1:2] - rows[:1]), rows[2:]])
-    along = np.tensordot(unit, space, axes=1)
-    # on the light cone of the direction itself a boost is a product again
-    near, far = (time - along) * np.exp(rapidity), (time + along) * np.exp(-rapidity)
-    new_time, new_along = 0.5 * (near + far), 0.5 * (far - near)
-    moved = space + np.multiply.outer(unit, new_along - along)
-    return np.concatenate([(new_time - moved[0])[np.newaxis], (new_time + moved[0])[np.newaxis], moved[1:]])
+    # Light-cone coordinates of the direction itself, t ∓ n·r, are where a boost is a product. They
+    # are formed from u and v without a detour over t and x, which would cost digits near x.
+    forward, backward = 0.5 * (1.0 + unit[0]), 0.5 * (1.0 - unit[0])
+    sideways = np.tensordot(unit[1:], rows[2:], axes=1)
+    near = forward * rows[0] + backward * rows[1] - sideways
+    far = backward * rows[0] + forward * rows[1] + sideways
+    new_near, new_far = near * np.exp(rapidity), far * np.exp(-rapidity)
+    # the part of x at right angles to the direction, which stays
+    across = 0.5 * (rows[1] - rows[0]) * float(unit[1:] @ unit[1:]) - unit[0] * sideways
+    moved = 0.5 * ((new_far - far) - (new_near - near))
+    return np.stack(
+        [
+            forward * new_near + backward * new_far - across,
+            backward * new_near + forward * new_far + across,
+            *(row + part * moved for row, part in zip(rows[2:], unit[1:], strict=True)),
+        ]
+    )
 
 
 def rotate(coordinates: ArrayLike, rotation: ArrayLike) -> Array:
@@ -68,7 +73,5 @@ def rotate(coordinates: ArrayLike, rotation: ArrayLike) -> Array:
     if matrix.shape != (size, size) or not np.allclose(matrix @ matrix.T, np.eye(size), atol=1e-12):
         raise ValueError(f"a rotation is an orthogonal {size}×{size} matrix")
     time = 0.5 * (rows[0] + rows[1])
-    space = np.tensordot(
-        matrix, np.concatenate([0.5 * (rows[1:2] - rows[:1]), rows[2:]]), axes=1
-    )
+    space = np.tensordot(matrix, np.concatenate([0.5 * (rows[1:2] - rows[:1]), rows[2:]]), axes=1)
     return np.concatenate([(time - space[0])[np.newaxis], (time + space[0])[np.newaxis], space[1:]])

@@ -14,7 +14,7 @@ def doppler_factor(recession: ArrayLike) -> Array:
     Negative for approach. Equal to √((1 − β)/(1 + β)) (W. Rindler, *Relativity*, 2nd ed. (2006),
     §4.3; section from memory).
     """
-    return np.exp(-np.asarray(recession, dtype=float))
+    return np.asarray(np.exp(-np.asarray(recession, dtype=float)))
 
 
 def doppler_factor_between(emitter: ArrayLike, receiver: ArrayLike, ray: ArrayLike) -> Array:

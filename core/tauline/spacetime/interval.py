@@ -36,37 +36,34 @@ def interval_squared(first: ArrayLike, second: ArrayLike) -> Array:
     return np.asarray(step[0] * step[1] - np.sum(step[2:] ** 2, axis=0))
 
 
-def classify(first: ArrayLike, second: ArrayLike) -> IntervalClass:
+def classify(first: ArrayLike, second: ArrayLike, rounding: ArrayLike = 0.0) -> IntervalClass:
     """Return the class of the interval between two events, each ``(rows,)``.
 
     In 1+1 it comes from the signs of Δu and Δv alone, and a boost keeps both signs: the class is
-    the same in every frame. A step counts as 0 within 8 units of relative rounding of the
-    coordinates it is the difference of; the events are then null separated (or the same). In
-    2+1 and 3+1, s² counts as 0 within the same bound of its terms.
+    the same in every frame. A step counts as 0 below 8 ε (|a| + |b|), with ε = 2.2e-16 the
+    rounding of a double and a, b the two coordinates it is the difference of; the events are
+    then null separated, or the same where both steps are 0.
+
+    In 2+1 and 3+1, s² counts as 0 below 8 ε S Σ|Δ|, with S the largest |a| + |b| of all rows and
+    the sum over the steps of all rows. A boost mixes the rows, so this bound is not the same in
+    every frame: classify events by their source, not by what a fast frame sees of them.
+
+    u = t − x of large t and x may hold a larger error than its own size tells. ``rounding`` adds
+    such an error, in rows like the coordinates; it scales under a boost as they do.
+
+    ValueError unless all coordinates are finite.
     """
-    return classify_many(first, second).item()  # type: ignore[no-any-return]
+    return _MEMBERS[int(_codes(as_rows(first), as_rows(second), rounding))]
 
 
-def classify_many(first: ArrayLike, second: ArrayLike) -> NDArray[np.object_]:
+def classify_many(
+    first: ArrayLike, second: ArrayLike, rounding: ArrayLike = 0.0
+) -> NDArray[np.object_]:
     """Return the class of each interval between events ``(rows, *N)``, as in classify."""
-    a, b = np.broadcast_arrays(as_rows(first), as_rows(second))
-    step, size = b - a, np.abs(a) + np.abs(b)
-    if a.shape[0] == 2:
-        zero = np.abs(step) <= ROUNDING * size
-        same, null = zero[0] & zero[1], zero[0] | zero[1]
-        timelike = step[0] * np.sign(step[1]) > 0.0
-    else:
-        square = interval_squared(a, b)
-        # the parts of an event share one scale once y and z are mixed in
-        scale = np.max(size, axis=0)
-        same = np.all(np.abs(step) <= ROUNDING * scale, axis=0)
-        reach = np.sum(np.abs(step), axis=0)
-        null = np.abs(square) <= ROUNDING * scale * reach
-        timelike = square > 0.0
-    result = np.full(same.shape, IntervalClass.SPACELIKE, dtype=object)
-    result[timelike] = IntervalClass.TIMELIKE
-    result[null] = IntervalClass.NULL
-    result[same] = IntervalClass.SAME
+    codes = _codes(as_rows(first), as_rows(second), rounding)
+    result = np.empty(codes.shape, dtype=object)
+    for code, member in enumerate(_MEMBERS):
+        result[codes == code] = member
     return result
 
 
@@ -85,16 +82,47 @@ def order(first: ArrayLike, second: ArrayLike) -> int:
 def proper_time(first: ArrayLike, second: ArrayLike) -> Array:
     """Proper time √s² of a straight worldline between events ``(rows, *N)``.
 
-    NaN where the separation is spacelike.
+    0 where they are null separated or the same, NaN where spacelike.
     """
-    square = interval_squared(first, second)
-    return np.where(square >= 0.0, np.sqrt(np.abs(square)), np.nan)
+    codes = _codes(as_rows(first), as_rows(second), 0.0)
+    root = np.sqrt(np.abs(interval_squared(first, second)))
+    return np.select([codes >= _NULL, codes == _TIMELIKE], [0.0, root], np.nan)
 
 
 def proper_distance(first: ArrayLike, second: ArrayLike) -> Array:
     """Proper distance √(−s²), measured in the frame in which both happen at one time.
 
-    NaN where the separation is timelike.
+    0 where they are null separated or the same, NaN where timelike.
     """
-    square = interval_squared(first, second)
-    return np.where(square <= 0.0, np.sqrt(np.abs(square)), np.nan)
+    codes = _codes(as_rows(first), as_rows(second), 0.0)
+    root = np.sqrt(np.abs(interval_squared(first, second)))
+    return np.select([codes >= _NULL, codes == _SPACELIKE], [0.0, root], np.nan)
+
+
+_MEMBERS = (
+    IntervalClass.SPACELIKE,
+    IntervalClass.TIMELIKE,
+    IntervalClass.NULL,
+    IntervalClass.SAME,
+)
+_SPACELIKE, _TIMELIKE, _NULL, _SAME = range(len(_MEMBERS))
+
+
+def _codes(first: Array, second: Array, rounding: ArrayLike) -> NDArray[np.intp]:
+    """Return the place in ``_MEMBERS`` of the class of each interval."""
+    a, b = np.broadcast_arrays(first, second)
+    step, size = b - a, np.abs(a) + np.abs(b)
+    if not np.all(np.isfinite(size)):
+        raise ValueError("only events with finite coordinates have an interval class")
+    if a.shape[0] == 2:
+        zero = np.abs(step) <= ROUNDING * size + rounding
+        same, null = zero[0] & zero[1], zero[0] | zero[1]
+        timelike = step[0] * np.sign(step[1]) > 0.0
+    else:
+        # the rows share one scale once a boost or a rotation has mixed them
+        slack = np.max(ROUNDING * size + rounding, axis=0)
+        same = np.all(np.abs(step) <= slack, axis=0)
+        square = interval_squared(a, b)
+        null = np.abs(square) <= slack * np.sum(np.abs(step), axis=0)
+        timelike = square > 0.0
+    return np.select([same, null, timelike], [_SAME, _NULL, _TIMELIKE], _SPACELIKE)

@@ -8,19 +8,19 @@ J. A. Wheeler, *Spacetime Physics*, 1st ed. (1966), ch. 1; W. Rindler, *Relativi
 from __future__ import annotations
 
 import numpy as np
-from numpy.typing import ArrayLike, NDArray
+from numpy.typing import ArrayLike
 
-Array = NDArray[np.float64]
+from tauline.spacetime.lightcone import Array
 
 
 def beta(rapidity: ArrayLike) -> Array:
     """Velocity in units of c: tanh φ."""
-    return np.tanh(np.asarray(rapidity, dtype=float))
+    return np.asarray(np.tanh(np.asarray(rapidity, dtype=float)))
 
 
 def gamma(rapidity: ArrayLike) -> Array:
     """Lorentz factor: cosh φ."""
-    return np.cosh(np.asarray(rapidity, dtype=float))
+    return np.asarray(np.cosh(np.asarray(rapidity, dtype=float)))
 
 
 def gamma_minus_one(rapidity: ArrayLike) -> Array:
@@ -40,32 +40,46 @@ def from_beta(velocity: ArrayLike) -> Array:
     """Rapidity of a velocity in units of c; ValueError unless −1 < β < 1."""
     value = np.asarray(velocity, dtype=float)
     if not np.all(np.abs(value) < 1.0):
-        raise ValueError("a velocity must be between −c and c")
-    return np.arctanh(value)
+        raise ValueError("a velocity in units of c must be above −1 and below 1")
+    return np.asarray(np.arctanh(value))
 
 
 def from_one_minus_beta(deficit: ArrayLike, direction: ArrayLike = 1.0) -> Array:
     """Rapidity ½ ln((2 − ε)/ε) of a speed 1 − ε; the sign of ``direction`` is its sign.
 
-    ValueError unless 0 < ε ≤ 1.
+    ValueError unless 0 < ε ≤ 1 and the direction has a sign.
     """
     value = np.asarray(deficit, dtype=float)
     if not np.all((value > 0.0) & (value <= 1.0)):
         raise ValueError("1 − β must be above 0 and at most 1")
-    return np.sign(direction) * 0.5 * (np.log1p(1.0 - value) - np.log(value))
+    return np.asarray(_signed(direction) * 0.5 * (np.log1p(1.0 - value) - np.log(value)))
 
 
 def from_gamma(lorentz_factor: ArrayLike, direction: ArrayLike = 1.0) -> Array:
-    """Rapidity arcosh γ; the sign of ``direction`` is its sign. ValueError unless γ ≥ 1."""
+    """Rapidity arcosh γ; the sign of ``direction`` is its sign.
+
+    ValueError unless γ ≥ 1 and the direction has a sign. A γ near 1, as a double, does not hold
+    the speed to all digits: :func:`from_gamma_minus_one` does.
+    """
     value = np.asarray(lorentz_factor, dtype=float)
     if not np.all((value >= 1.0) & np.isfinite(value)):
-        raise ValueError("a Lorentz factor must be finite and at least 1")
-    return np.sign(direction) * np.arccosh(value)
+        raise ValueError("a Lorentz factor γ must be finite and at least 1")
+    return np.asarray(_signed(direction) * np.arccosh(value))
 
 
 def from_gamma_minus_one(excess: ArrayLike, direction: ArrayLike = 1.0) -> Array:
-    """Rapidity 2 arsinh √((γ − 1)/2) of slow motion, from γ − 1. ValueError unless γ ≥ 1."""
+    """Rapidity 2 arsinh √((γ − 1)/2), for slow motion too; ``direction`` gives its sign.
+
+    ValueError unless γ − 1 ≥ 0 and the direction has a sign.
+    """
     value = np.asarray(excess, dtype=float)
     if not np.all((value >= 0.0) & np.isfinite(value)):
-        raise ValueError("γ − 1 must be finite and not negative")
-    return np.sign(direction) * 2.0 * np.arcsinh(np.sqrt(0.5 * value))
+        raise ValueError("γ − 1 must be finite and at least 0")
+    return np.asarray(_signed(direction) * 2.0 * np.arcsinh(np.sqrt(0.5 * value)))
+
+
+def _signed(direction: ArrayLike) -> Array:
+    sign = np.sign(np.asarray(direction, dtype=float))
+    if not np.all(np.abs(sign) == 1.0):
+        raise ValueError("a direction must be above or below 0, for +x or −x")
+    return np.asarray(sign)
