@@ -24,7 +24,13 @@ def boost(coordinates: ArrayLike, rapidity: ArrayLike) -> Array:
     """
     rows = as_rows(coordinates)
     phi = np.asarray(rapidity, dtype=float)
-    return np.stack(np.broadcast_arrays(rows[0] * np.exp(phi), rows[1] * np.exp(-phi), *rows[2:]))
+    # written into place: a stack of the rows would copy them once more
+    result = np.empty((rows.shape[0], *np.broadcast_shapes(rows.shape[1:], phi.shape)))
+    np.multiply(rows[0], np.exp(phi), out=result[0, ...])
+    np.multiply(rows[1], np.exp(-phi), out=result[1, ...])
+    for row, target in zip(rows[2:], result[2:], strict=True):
+        target[...] = row
+    return result
 
 
 def boost_along(coordinates: ArrayLike, rapidity: float, direction: ArrayLike) -> Array:

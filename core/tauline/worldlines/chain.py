@@ -42,7 +42,7 @@ class Chain(msgspec.Struct, frozen=True, kw_only=True):
         own = np.asarray(tau, dtype=float)
         result = np.full((2, *own.shape), np.nan)
         index = self.leg_index(own)
-        for k, leg in enumerate(self.legs):
+        for k, leg in self._present(index):
             here = index == k
             # the sum of the durations may overshoot the last leg's own end by a rounding
             result[:, here] = leg.event(np.clip(own[here] - self.offsets[k], leg.start, leg.end))
@@ -101,6 +101,10 @@ class Chain(msgspec.Struct, frozen=True, kw_only=True):
         where = np.searchsorted(self.offsets[1:], tau, side="right" if side == "after" else "left")
         return np.asarray(where, dtype=np.intp)
 
+    def _present(self, index: NDArray[np.intp]) -> list[tuple[int, Leg]]:
+        """The legs that any of the answers lies on."""
+        return [(int(k), self.legs[k]) for k in np.unique(index)]
+
     def _joints(self) -> Array:
         points = [leg.point for leg in self.legs[1:]]
         return np.stack(points, axis=1) if points else np.empty((2, 0))
@@ -109,7 +113,7 @@ class Chain(msgspec.Struct, frozen=True, kw_only=True):
         own = np.asarray(tau, dtype=float)
         result = np.empty(own.shape)
         index = self.leg_index(own, side)
-        for k, leg in enumerate(self.legs):
+        for k, leg in self._present(index):
             here = index == k
             result[here] = ask(leg, own[here] - self.offsets[k])
         return result
@@ -118,7 +122,7 @@ class Chain(msgspec.Struct, frozen=True, kw_only=True):
         self, index: NDArray[np.intp], ask: Callable[[Leg, NDArray[np.bool_]], Array]
     ) -> Array:
         result = np.full(np.shape(index), np.nan)
-        for k, leg in enumerate(self.legs):
+        for k, leg in self._present(index):
             here = np.asarray(index == k)
             result[here] = ask(leg, here) + self.offsets[k]
         return result
