@@ -134,9 +134,7 @@ def test_the_words_of_the_pdf_can_be_searched(tmp_path: Path) -> None:
     assert float(page.mediabox.width) == pytest.approx(120 / 25.4 * 72, abs=0.1)
 
 
-def test_a_figure_of_what_can_be_drawn(
-    tmp_path: Path, capsys: pytest.CaptureFixture[str]
-) -> None:
+def test_a_figure_of_what_can_be_drawn(tmp_path: Path, capsys: pytest.CaptureFixture[str]) -> None:
     file, out = tmp_path / "faulty.toml", tmp_path / "figure.svg"
     file.write_text(FAULTY, encoding="utf-8")
     assert run("figure", file, "--out", out) == 1

@@ -58,11 +58,11 @@ def velocity_readouts(
     if near_light:
         deficit = float(one_minus_beta(abs(relative)))
         yield readout(
-            units, f"1 − |velocity|{where}", "1 − β", deficit, VELOCITY, frame=frame.label
+            units, f"shortfall from c{where}", "1 − β", deficit, NUMBER, frame=frame.label
         )
     else:
         value = float(beta(relative))
-        yield readout(units, f"velocity{where}", "β", value, VELOCITY, frame=frame.label)
+        yield readout(units, f"velocity{where}", "v", value, VELOCITY, frame=frame.label)
     value = float(gamma(relative))
     yield readout(units, f"Lorentz factor{where}", "γ", value, NUMBER, frame=frame.label)
     yield readout(units, f"rapidity{where}", "φ", relative, NUMBER, frame=frame.label)
@@ -142,7 +142,7 @@ def two_observers(
         yield _relative(units, f"velocity of {names}{where}", relative)
     yield Readout(
         name="relative velocity elsewhere",
-        symbol="β",
+        symbol="v",
         number=None,
         unit="",
         note="select an event on each: it is between two stated points",
@@ -153,7 +153,7 @@ def _relative(units: UnitSystem, name: str, relative: float) -> Readout:
     return readout(
         units,
         name,
-        "β",
+        "v",
         float(beta(relative)),
         VELOCITY,
         working=Working(

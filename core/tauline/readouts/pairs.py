@@ -89,7 +89,7 @@ def _singled_out(
     yield readout(
         resolved.units,
         f"frame where they are {what}",
-        "β",
+        "v",
         float(beta(relative)),
         VELOCITY,
         frame=frame.label,
@@ -149,7 +149,7 @@ def _between_observers(
                     yield readout(
                         resolved.units,
                         f"velocity of {names}{note}",
-                        "β",
+                        "v",
                         float(beta(relative)),
                         VELOCITY,
                         working=Working(

@@ -31,7 +31,7 @@ def signal_readouts(
             yield readout(units, name, "τ", placement.proper_time, TIME)
     if len(ends) == 2:
         for item in pair_readouts(resolved, ends[0][1], ends[1][1], frame):
-            if item.symbol in ("D", "β") or item.symbol == "Δt":
+            if item.symbol in ("D", "v", "Δt"):
                 yield item
     else:
         missing = "received" if signal.sent is not None else "sent"
