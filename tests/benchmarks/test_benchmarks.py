@@ -11,6 +11,7 @@ from collections.abc import Callable
 
 import numpy as np
 import pytest
+
 from tauline.export.measure import PrintMeasure
 from tauline.figure.diagram import diagram
 from tauline.figure.style import PRINT

@@ -7,6 +7,7 @@ from pathlib import Path
 
 import pytest
 from pypdf import PdfReader
+
 from tauline import cli
 from tauline.resources import scenarios_folder
 

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import math
+from functools import cache
 from itertools import combinations, pairwise
 
 import msgspec
@@ -24,6 +25,8 @@ from tauline.scenario.read import parse, read
 ALL_LAYERS: frozenset[Layer] = frozenset(
     ("grid", "hyperbolas", "clock_ticks", "labels", "signals", "light_cones", "caption")
 )
+FEW = settings(max_examples=30)
+"""A whole drawing takes some tens of milliseconds."""
 SHIPPED = ("courier", "rod-and-shed", "three-beacons")
 
 EVERYTHING = """
@@ -101,13 +104,19 @@ class EvenMeasure:
         return 5.0 * sum(len(run.text) for run in runs), 8.0
 
 
-@pytest.fixture(scope="module")
-def everything() -> Resolved:
+@cache
+def all_kinds() -> Resolved:
     resolved = resolve(parse(EVERYTHING).scenario)
     assert resolved.faults == ()
     return resolved
 
 
+@pytest.fixture
+def everything() -> Resolved:
+    return all_kinds()
+
+
+@cache
 def shipped(name: str) -> Resolved:
     return resolve(read(scenarios_folder() / f"{name}.toml").scenario)
 
@@ -133,7 +142,7 @@ def strokes_of(drawing: Drawing, role: Role, source: str | None = None) -> list[
 # --- within the window, and finite ------------------------------------------------------------
 
 
-@settings(max_examples=60)
+@FEW
 @given(
     st.floats(-6.0, 6.0) | st.floats(-290.0, 290.0),
     st.floats(-10.0, 4.0),
@@ -143,7 +152,7 @@ def strokes_of(drawing: Drawing, role: Role, source: str | None = None) -> list[
 def test_nothing_far_away_or_endless_reaches_a_painter(
     rapidity: float, zoom: float, across: float, up: float
 ) -> None:
-    resolved = resolve(parse(EVERYTHING).scenario)
+    resolved = all_kinds()
     fitted = seen_from(resolved, rapidity).window
     side = fitted.width * 10.0**zoom
     x, t = fitted.x0 + across * fitted.width, fitted.t0 + up * fitted.height
@@ -165,6 +174,7 @@ def test_nothing_far_away_or_endless_reaches_a_painter(
 # --- light ------------------------------------------------------------------------------------
 
 
+@FEW
 @given(st.floats(-3.0, 3.0))
 def test_light_runs_at_45_degrees_in_every_view(rapidity: float) -> None:
     courier = shipped("courier")
@@ -200,9 +210,10 @@ def test_light_never_received_goes_to_the_edge(everything: Resolved) -> None:
 # --- events and worldlines --------------------------------------------------------------------
 
 
+@FEW
 @given(st.floats(-3.0, 3.0))
 def test_events_are_where_the_chart_puts_them(rapidity: float) -> None:
-    everything = resolve(parse(EVERYTHING).scenario)
+    everything = all_kinds()
     drawing = drawn(everything, seen_from(everything, rapidity))
     chart = InertialChart(rapidity, everything.base.origin)
     dots = {marker.source: marker.at for marker in drawing.markers if marker.role is Role.EVENT}
@@ -211,10 +222,11 @@ def test_events_are_where_the_chart_puts_them(rapidity: float) -> None:
         assert at == pytest.approx(tuple(chart.to_chart(everything.events[name].point)))
 
 
+@FEW
 @given(st.floats(-2.0, 2.0))
 def test_worldlines_stay_within_a_fraction_of_a_point(rapidity: float) -> None:
     """Halfway along each drawn chord, the true line is less than 0.3 points away."""
-    everything = resolve(parse(EVERYTHING).scenario)
+    everything = all_kinds()
     drawing = drawn(everything, seen_from(everything, rapidity))
     chart = InertialChart(rapidity, everything.base.origin)
     line = everything.worldlines["twin"].line
@@ -269,10 +281,11 @@ def covers(drawing: Drawing, source: str, x: float, t: float) -> bool:
     return inside
 
 
+@FEW
 @given(st.floats(-2.0, 2.0), st.floats(-1.9, -0.1), st.floats(-5.0, 12.0))
 def test_a_body_is_where_both_its_ends_are(rapidity: float, x: float, t: float) -> None:
     """Between x = −2 and x = 0, from t = 0 to t = 8 of the rest frame, in every view."""
-    everything = resolve(parse(EVERYTHING).scenario)
+    everything = all_kinds()
     if min(abs(t), abs(t - 8.0)) < 1e-3:
         return
     at = InertialChart(rapidity, everything.base.origin).to_chart(np.array([t - x, t + x]))

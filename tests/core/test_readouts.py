@@ -7,6 +7,7 @@ import math
 import pytest
 from hypothesis import given
 from hypothesis import strategies as st
+
 from tauline.readouts import Readout, format_number, readouts_for
 from tauline.resolve import Resolved, resolve
 from tauline.scenario.read import parse

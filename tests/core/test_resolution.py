@@ -8,6 +8,7 @@ import numpy as np
 import pytest
 from hypothesis import given
 from hypothesis import strategies as st
+
 from tauline.resolve import Resolved, resolve
 from tauline.resolve.relations import related
 from tauline.scenario.edit import set_field, set_parameter
