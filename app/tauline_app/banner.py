@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from PySide6.QtCore import Qt
 from PySide6.QtGui import QPalette
 from PySide6.QtWidgets import QFrame, QHBoxLayout, QLabel, QToolButton, QWidget
 
@@ -15,6 +16,7 @@ class Banner(QFrame):
         self.setAutoFillBackground(True)
         self._text = QLabel()
         self._text.setWordWrap(True)
+        self._text.setTextFormat(Qt.TextFormat.PlainText)
         self._text.setAccessibleName("Message")
         close = QToolButton()
         close.setText("✕")

@@ -5,7 +5,7 @@ from __future__ import annotations
 from pathlib import Path
 
 from PySide6.QtCore import QSize, Qt
-from PySide6.QtGui import QCloseEvent, QDragEnterEvent, QDropEvent
+from PySide6.QtGui import QCloseEvent, QDragEnterEvent, QDropEvent, QGuiApplication
 from PySide6.QtWidgets import (
     QDialog,
     QDockWidget,
@@ -17,7 +17,9 @@ from PySide6.QtWidgets import (
     QWidget,
 )
 
-from tauline_app.actions.files import open_file, save_file
+from tauline.readouts import format_number
+from tauline.scenario.units import LENGTH, TIME
+from tauline_app.actions.files import changed_meanwhile, open_file, save_file
 from tauline_app.banner import Banner
 from tauline_app.canvas.canvas import Canvas
 from tauline_app.dialogs.export_figure import ExportFigureDialog
@@ -36,6 +38,7 @@ from tauline_app.theme import Scheme, apply_scheme
 SCENARIOS = "Scenarios (*.toml);;All files (*)"
 LAYOUT = "window/state-1"
 GEOMETRY = "window/geometry"
+POINTER_DIGITS = 4
 
 
 class MainWindow(QMainWindow):
@@ -55,8 +58,13 @@ class MainWindow(QMainWindow):
         self.problems = ProblemsPanel(self.session, self)
         self._lay_out()
         self.menus = Menus(self)
-        self._status = QLabel()
+        self._pointer, self._status = QLabel(), QLabel()
+        self._pointer.setContentsMargins(8, 0, 0, 0)
+        self._pointer.setAccessibleName("Place under the pointer")
+        self.statusBar().addWidget(self._pointer)
         self.statusBar().addPermanentWidget(self._status)
+        self.canvas.pointed_at.connect(self._point_at)
+        QGuiApplication.styleHints().colorSchemeChanged.connect(self._system_scheme_changed)
         self.setAcceptDrops(True)
         self.session.document_changed.connect(self._follow)
         self.session.selection_changed.connect(self._follow)
@@ -91,7 +99,7 @@ class MainWindow(QMainWindow):
         self.setCorner(Qt.Corner.BottomRightCorner, right)
         self.resize(QSize(1360, 860))
         self.resizeDocks(
-            [self.docks["Objects"], self.docks["Readouts"]], [230, 380], Qt.Orientation.Horizontal
+            [self.docks["Objects"], self.docks["Readouts"]], [212, 368], Qt.Orientation.Horizontal
         )
         self.resizeDocks([self.docks["Events"]], [230], Qt.Orientation.Vertical)
 
@@ -109,6 +117,10 @@ class MainWindow(QMainWindow):
         for part in (self.canvas, self.view_bar, self.objects):
             part.set_style(style)
 
+    def _system_scheme_changed(self) -> None:
+        if self.settings.scheme is Scheme.SYSTEM:
+            self.set_scheme(Scheme.SYSTEM)
+
     # --- files --------------------------------------------------------------------------------
 
     def open_path(self, path: Path) -> bool:
@@ -121,6 +133,7 @@ class MainWindow(QMainWindow):
             return False
         self.banner.hide()
         self.settings.opened(path)
+        self.docks["Problems" if self.session.resolved.faults else "Events"].raise_()
         return True
 
     def ask_open(self) -> None:
@@ -141,11 +154,16 @@ class MainWindow(QMainWindow):
         return bool(name) and self.save_to(Path(name))
 
     def save_to(self, path: Path) -> bool:
-        """Save to a file; a message where that fails."""
+        """Save to a file; a message where that fails, or once if it has changed meanwhile."""
+        warning = changed_meanwhile(self.session, path)
+        if warning and warning != self.banner.message:
+            self.banner.say(warning)
+            return False
         fault = save_file(self.session, path)
         if fault:
             self.banner.say(fault)
             return False
+        self.banner.hide()
         self.settings.opened(path)
         self.statusBar().showMessage(f"Saved {path.name}", 4000)
         return True
@@ -209,6 +227,20 @@ class MainWindow(QMainWindow):
             self.restoreGeometry(geometry)
         if layout is not None:
             self.restoreState(layout)
+
+    def _point_at(self, place: tuple[float, float] | None) -> None:
+        """Say which event the pointer is at, in the viewing frame."""
+        text = ""
+        if place is not None:
+            resolved, frame = self.session.resolved, self.session.view.frame
+            units = resolved.units
+            t = format_number(units.to_reader(place[1], TIME), POINTER_DIGITS)
+            x = format_number(units.to_reader(place[0], LENGTH), POINTER_DIGITS)
+            text = (
+                f"t = {t} {units.symbol(TIME)}, x = {x} {units.symbol(LENGTH)}"
+                f" in {frame.label or frame.id}"
+            )
+        self._pointer.setText(text)
 
     def _follow(self) -> None:
         session = self.session

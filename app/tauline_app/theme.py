@@ -46,7 +46,7 @@ _DARK = {
     QPalette.ColorRole.Button: "#2d323a",
     QPalette.ColorRole.ButtonText: "#dee2e8",
     QPalette.ColorRole.BrightText: "#ff8a80",
-    QPalette.ColorRole.Highlight: "#3d7fc1",
+    QPalette.ColorRole.Highlight: "#3372b3",
     QPalette.ColorRole.HighlightedText: "#ffffff",
     QPalette.ColorRole.ToolTipBase: "#2d323a",
     QPalette.ColorRole.ToolTipText: "#dee2e8",
@@ -88,9 +88,9 @@ def qcolour(colour: Colour) -> QColor:
     return QColor(*colour)
 
 
-def hue_colour(style: Style, hue: int = NEUTRAL) -> QColor:
-    """Colour of an observer, as its worldline has it."""
-    return qcolour(style.colour(Role.WORLDLINE, hue))
+def hue_colour(style: Style, hue: int = NEUTRAL, role: Role = Role.WORLDLINE) -> QColor:
+    """Colour of an observer, as its worldline has it (or its label, which stands out more)."""
+    return qcolour(style.colour(role, hue))
 
 
 _SHEET = """
@@ -99,6 +99,7 @@ QDockWidget::title { padding: 5px 8px; background: palette(window); }
 QDockWidget > QWidget { font-weight: 400; }
 QHeaderView::section { padding: 3px 6px; border: 0; border-bottom: 1px solid palette(mid);
     background: palette(window); }
+QTableView::item { padding-left: 4px; padding-right: 5px; }
 QTreeView, QTableView, QScrollArea, QListView { border: 1px solid palette(mid); }
 QToolTip { border: 1px solid palette(mid); padding: 3px; }
 QLineEdit { padding: 2px 4px; }

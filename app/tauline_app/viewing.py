@@ -11,6 +11,9 @@ from tauline.figure.view import DEFAULT_LAYERS, DiagramView, default_view, keep_
 from tauline.resolve import FrameResult, Resolved
 from tauline.scenario.objects import Layer
 
+SAME_FRAME = 1e-12
+"""Difference of rapidities below which two frames are one, as typed numbers go."""
+
 
 class ViewState(msgspec.Struct, frozen=True, kw_only=True):
     """The viewing frame, the window in it, and what is shown.
@@ -44,6 +47,15 @@ def opening_view(resolved: Resolved) -> ViewState:
         layers=view.layers,
         pivot=pivot,
     )
+
+
+def frame_at(resolved: Resolved, rapidity: float) -> FrameResult:
+    """The frame of a rapidity relative to the base frame: a declared one, if it is one's own."""
+    origin = tuple(resolved.base.origin)
+    for frame in resolved.frames.values():
+        if abs(frame.rapidity - rapidity) < SAME_FRAME and tuple(frame.origin) == origin:
+            return frame
+    return free_frame(resolved, rapidity)
 
 
 def seen_from(state: ViewState, resolved: Resolved, frame: FrameResult) -> ViewState:

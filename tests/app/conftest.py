@@ -4,15 +4,33 @@ from __future__ import annotations
 
 import gc
 import os
+import shutil
 from collections.abc import Callable, Iterator
+from pathlib import Path
 
 # before Qt makes an application; a platform set from outside stays
 os.environ.setdefault("QT_QPA_PLATFORM", "offscreen")
 
 import pytest
 import shiboken6
-from PySide6.QtCore import QCoreApplication, QEvent, QObject, QThread, QThreadPool, QTimer
-from PySide6.QtWidgets import QApplication
+from PySide6.QtCore import (
+    QCoreApplication,
+    QEvent,
+    QObject,
+    QPointF,
+    QSettings,
+    Qt,
+    QThread,
+    QThreadPool,
+    QTimer,
+)
+from PySide6.QtGui import QMouseEvent
+from PySide6.QtWidgets import QApplication, QWidget
+from pytestqt.qtbot import QtBot
+
+from tauline.resources import scenarios_folder
+from tauline_app.main import prepare_application
+from tauline_app.main_window import MainWindow
 
 QTS_OWN = ("QTipLabel",)
 """Top-level widgets that Qt keeps for itself: the tool tip."""
@@ -57,9 +75,11 @@ def _find() -> dict[int, QObject]:
 
 
 def _settle() -> None:
-    """Let what is on its way out go: deferred deletions, workers about to end, cycles."""
+    """Let what is on its way out go: deferred deletions, workers about to end, the clipboard."""
     if QCoreApplication.instance() is None:
         return
+    # what a test copied would be deleted with Qt's own statics, when Python is gone: a crash
+    QApplication.clipboard().clear()
     QThreadPool.globalInstance().waitForDone(5000)
     for _ in range(3):
         QCoreApplication.sendPostedEvents(None, QEvent.Type.DeferredDelete.value)
@@ -108,3 +128,74 @@ def _no_leaks() -> Iterator[None]:
     _settle()
     if names:
         pytest.fail("left behind: " + ", ".join(names), pytrace=False)
+
+
+@pytest.fixture
+def make_window(
+    qtbot: QtBot, tmp_path: Path, monkeypatch: pytest.MonkeyPatch
+) -> Callable[[], MainWindow]:
+    """Return a maker of windows whose settings are their own and that ask nothing when closed."""
+    QSettings.setDefaultFormat(QSettings.Format.IniFormat)
+    QSettings.setPath(
+        QSettings.Format.IniFormat, QSettings.Scope.UserScope, str(tmp_path / "settings")
+    )
+    prepare_application()
+
+    def make() -> MainWindow:
+        window = MainWindow()
+        window.setAttribute(Qt.WidgetAttribute.WA_DeleteOnClose, False)
+        qtbot.addWidget(window, before_close_func=_leave_quietly)
+        window.resize(1300, 850)
+        window.show()
+        qtbot.waitExposed(window)
+        return window
+
+    def _leave_quietly(window: MainWindow) -> None:
+        monkeypatch.setattr(window, "_may_leave", lambda: True)
+
+    return make
+
+
+@pytest.fixture
+def window(make_window: Callable[[], MainWindow]) -> MainWindow:
+    """Return a window on screen, with nothing in it."""
+    return make_window()
+
+
+@pytest.fixture
+def courier(window: MainWindow, tmp_path: Path) -> MainWindow:
+    """Return the window with a copy of the courier's scenario in it."""
+    path = tmp_path / "courier.toml"
+    shutil.copy(scenarios_folder() / "courier.toml", path)
+    assert window.open_path(path)
+    return window
+
+
+@pytest.fixture
+def drag() -> Callable[[QWidget, QPointF, QPointF], None]:
+    """Return a function that drags with the left button, in small steps, from place to place."""
+
+    def send(widget: QWidget, kind: QEvent.Type, at: QPointF, pressed: bool) -> None:
+        left, none = Qt.MouseButton.LeftButton, Qt.MouseButton.NoButton
+        moves = kind == QEvent.Type.MouseMove
+        QCoreApplication.sendEvent(
+            widget,
+            QMouseEvent(
+                kind,
+                at,
+                widget.mapToGlobal(at),
+                none if moves else left,
+                left if pressed else none,
+                Qt.KeyboardModifier.NoModifier,
+            ),
+        )
+
+    def dragged(widget: QWidget, start: QPointF, end: QPointF) -> None:
+        send(widget, QEvent.Type.MouseButtonPress, start, True)
+        for step in range(1, 11):
+            send(widget, QEvent.Type.MouseMove, start + (end - start) * (step / 10), True)
+            QCoreApplication.processEvents()
+        send(widget, QEvent.Type.MouseButtonRelease, end, False)
+        QCoreApplication.processEvents()
+
+    return dragged

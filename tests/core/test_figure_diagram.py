@@ -100,7 +100,7 @@ to = "twin"
 class EvenMeasure:
     """Every character is as wide as the next."""
 
-    def size(self, runs: tuple[Run, ...], role: Role) -> tuple[float, float]:
+    def size(self, runs: tuple[Run, ...], role: Role) -> tuple[float, float]:  # noqa: ARG002
         return 5.0 * sum(len(run.text) for run in runs), 8.0
 
 
@@ -164,11 +164,12 @@ def test_nothing_far_away_or_endless_reaches_a_painter(
     # ticks reach across their axes by some points
     margin = 12.0 / drawing.scale + 1e-9 * side
     low, high = np.array([x, t]) - margin, np.array([x, t]) + side + margin
-    for item in (*drawing.fills, *drawing.strokes):
-        assert np.all(np.isfinite(item.points))
-        assert np.all((item.points >= low) & (item.points <= high)), item
-    for place in (*drawing.markers, *drawing.labels):
-        assert np.all((np.asarray(place.at) >= low) & (np.asarray(place.at) <= high))
+    outlines = [fill.points for fill in drawing.fills] + [s.points for s in drawing.strokes]
+    outlines += [np.array([marker.at]) for marker in drawing.markers]
+    outlines += [np.array([label.at]) for label in drawing.labels]
+    for points in outlines:
+        assert np.all(np.isfinite(points))
+        assert np.all((points >= low) & (points <= high))
 
 
 # --- light ------------------------------------------------------------------------------------
@@ -466,7 +467,8 @@ def test_labels_are_one_line_of_signs_that_can_be_printed() -> None:
 def test_layers_leave_out_what_they_name(everything: Resolved) -> None:
     bare = msgspec.structs.replace(seen_from(everything, 0.0), layers=frozenset())
     drawing = drawn(everything, bare)
-    roles = {item.role for item in (*drawing.strokes, *drawing.fills, *drawing.labels)}
+    roles = {stroke.role for stroke in drawing.strokes}
+    roles |= {fill.role for fill in drawing.fills} | {label.role for label in drawing.labels}
     assert roles & {Role.WORLDLINE, Role.FRAME_AXIS} == {Role.WORLDLINE, Role.FRAME_AXIS}
     assert not roles & {
         Role.GRID,

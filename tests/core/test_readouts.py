@@ -99,6 +99,37 @@ def test_null_pairs_have_neither() -> None:
     assert "proper distance" not in found
 
 
+@pytest.mark.parametrize(
+    ("t1", "x1", "t2", "x2"), [(100.1, 100.3, 100.4, 100.6), (0.1, 0.3, 0.4, 0)]
+)
+@pytest.mark.parametrize("frame", ["base", "f"])
+def test_decimals_on_a_light_ray_are_on_it(
+    t1: float, x1: float, t2: float, x2: float, frame: str
+) -> None:
+    where = f'frame = "{frame}"\n'
+    resolved = resolve(
+        parse(
+            f"""tauline = 1
+[[frame]]
+id = "f"
+velocity = "0.9 c"
+[[event]]
+id = "a"
+t = {t1}
+x = {x1}
+{where}
+[[event]]
+id = "b"
+t = {t2}
+x = {x2}
+{where}
+"""
+        ).scenario
+    )
+    found = say("a", "b", of=resolved, frame="base")
+    assert "null" in found["interval class"].note
+
+
 @pytest.mark.parametrize("frame", ["ground", "train", "turner.leg-2"])
 def test_doppler_factor_of_a_stated_emission_and_reception(frame: str) -> None:
     found = say("ask", "ray.received", frame=frame)

@@ -1,7 +1,9 @@
-"""Opening, saving and exporting; each returns "" or what went wrong."""
+"""Opening, saving and exporting; each says "" or what went wrong."""
 
 from __future__ import annotations
 
+from collections.abc import Callable
+from functools import partial
 from pathlib import Path
 
 from tauline.errors import TaulineError
@@ -11,6 +13,7 @@ from tauline.export.text import write_text
 from tauline.figure.view import DiagramView
 from tauline.files import replace_file
 from tauline.readouts import EventTable
+from tauline.resolve import Resolved
 from tauline.scenario.read import read
 from tauline.scenario.write import save
 from tauline_app.session import Session
@@ -25,6 +28,24 @@ def open_file(session: Session, path: Path) -> str:
     return ""
 
 
+def changed_meanwhile(session: Session, path: Path) -> str:
+    """Say so if another program has changed the document's file since it was read; else ""."""
+    source = session.source
+    if source is None or source.path is None or path != source.path:
+        return ""
+    try:
+        now = path.read_bytes()
+    except OSError:
+        # nothing there to lose, or saving will say what is the matter
+        return ""
+    if now == source.text.encode():
+        return ""
+    return (
+        f"{path.name} has been changed by another program since it was opened."
+        " Save under another name, or save once more to replace it."
+    )
+
+
 def save_file(session: Session, path: Path) -> str:
     """Save the document, keeping the author's comments and order."""
     try:
@@ -34,20 +55,22 @@ def save_file(session: Session, path: Path) -> str:
     return ""
 
 
-def export_figure(
-    session: Session,
+def figure_task(
+    resolved: Resolved,
     view: DiagramView,
     path: Path,
     width_mm: float | None,
     height_mm: float | None,
-) -> str:
-    """Write a figure of a view."""
+) -> Callable[[], bytes]:
+    """The drawing of a figure file of a view, to be done beside the window."""
     kind = path.suffix.lower().removeprefix(".")
+    return partial(figure_bytes, resolved, view, kind, width_mm=width_mm, height_mm=height_mm)
+
+
+def write_figure(data: bytes, path: Path) -> str:
+    """Write a figure file."""
     try:
-        data = figure_bytes(session.resolved, view, kind, width_mm=width_mm, height_mm=height_mm)
         replace_file(path, data)
-    except TaulineError as error:
-        return str(error)
     except OSError as error:
         return f"{path} cannot be written: {error.strerror or error}"
     return ""

@@ -12,7 +12,7 @@ from PySide6.QtWidgets import QStyleOptionGraphicsItem, QWidget
 from tauline.figure.diagram import diagram
 from tauline.figure.drawing import Drawing, Window
 from tauline.figure.style import SCREEN_LIGHT, Style
-from tauline.resolve.relations import related
+from tauline.resolve.relations import owner_of, related
 from tauline_app.canvas.hit import thing_at
 from tauline_app.canvas.measure import ScreenMeasure
 from tauline_app.canvas.sheet import Sheet
@@ -153,7 +153,10 @@ class Canvas(pg.GraphicsView):  # type: ignore[misc]
         if self.drawing is None:
             return
         session, w = self._session, self.drawing.window
-        near = related(session.resolved, session.selection) if session.selection else None
+        # what has a fault is not drawn, and dimming all the rest would point at nothing
+        states = session.resolved.states
+        drawn = any(states.get(owner_of(name)) == "resolved" for name in session.selection)
+        near = related(session.resolved, session.selection) if drawn else None
         sheet = Sheet(self.drawing, self._style, near, session.selection)
         self.item.show(sheet, QRectF(w.x0, w.t0, w.width, w.height))
 

@@ -20,10 +20,12 @@ from tauline.figure.style import Style, blend
 from tauline_app.canvas.measure import run_font, run_width
 from tauline_app.theme import qcolour
 
-DIMMED = 0.72
+DIMMED = 0.66
 """Share of the ground in what is unrelated to the selection."""
 EMPHASIS = 1.4
 """How much wider a selected line is, in pixels."""
+
+EMPHASISED = frozenset((Role.WORLDLINE, Role.SIGNAL, Role.SIMULTANEITY))
 
 Look = tuple[str, int, bool, bool]
 """Role, hue, dimmed, selected."""
@@ -120,7 +122,7 @@ class Sheet:
         parts = np.split(everything, np.cumsum(lengths)[:-1])
         for stroke, points in zip(strokes, parts, strict=True):
             dimmed = self._is_dimmed(stroke.source)
-            selected = bool(stroke.source) and stroke.source in self._selected
+            selected = stroke.role in EMPHASISED and stroke.source in self._selected
             look = (str(stroke.role), stroke.hue, dimmed, selected)
             ends = points.tolist()
             self._lines.setdefault(look, []).extend(

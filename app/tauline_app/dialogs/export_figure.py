@@ -5,6 +5,7 @@ from __future__ import annotations
 from pathlib import Path
 
 import msgspec
+from PySide6.QtCore import Qt
 from PySide6.QtWidgets import (
     QComboBox,
     QDialog,
@@ -24,8 +25,10 @@ from tauline.export.figure import DEFAULT_WIDTH, FORMATS, GREATEST_SIDE, LEAST_S
 from tauline.figure.drawing import Window
 from tauline.figure.view import DiagramView, default_view
 from tauline.scenario.units import TIME
-from tauline_app.actions.files import export_figure
+from tauline_app.actions.files import figure_task, write_figure
+from tauline_app.dialogs.overwrite import OverwriteGuard
 from tauline_app.session import Session
+from tauline_app.worker import Work
 
 AS_SHOWN = "as shown"
 
@@ -45,7 +48,12 @@ class ExportFigureDialog(QDialog):
         self.first, self.last = self._number(), self._number()
         self.width_box, self.height_box = _millimetres(DEFAULT_WIDTH), _millimetres(0.0)
         self.file = QLineEdit(self._suggestion())
+        self.file.setAccessibleName("File")
+        self._guard = OverwriteGuard(session.path)
+        self._work: Work | None = None
         self.message = QLabel()
+        self.message.setTextFormat(Qt.TextFormat.PlainText)
+        self.message.setAccessibleName("Message")
         self.message.setWordWrap(True)
         self._lay_out()
         self._fill_times()
@@ -67,18 +75,17 @@ class ExportFigureDialog(QDialog):
         form.addRow("Width", self.width_box)
         form.addRow("Height", self.height_box)
         form.addRow("File", file)
-        buttons = QDialogButtonBox(
-            QDialogButtonBox.StandardButton.Save | QDialogButtonBox.StandardButton.Cancel
-        )
-        buttons.accepted.connect(self.accept)
-        buttons.rejected.connect(self.reject)
+        standard = QDialogButtonBox.StandardButton
+        self.buttons = QDialogButtonBox(standard.Save | standard.Cancel)
+        self.buttons.accepted.connect(self.accept)
+        self.buttons.rejected.connect(self.reject)
         layout = QVBoxLayout(self)
         layout.addLayout(form)
         layout.addWidget(
             QLabel("The ending names the format: " + ", ".join(f".{f}" for f in FORMATS))
         )
         layout.addWidget(self.message)
-        layout.addWidget(buttons)
+        layout.addWidget(self.buttons)
         self.setMinimumWidth(460)
 
     def chosen_view(self) -> DiagramView:
@@ -97,20 +104,51 @@ class ExportFigureDialog(QDialog):
         return msgspec.structs.replace(view, window=Window(w.x0, w.x1, t0, t1))
 
     def accept(self) -> None:
-        """Write the figure."""
-        view = self.chosen_view()
-        if view.window.height <= 0.0:
-            self.message.setText("The time window ends before it begins.")
+        """Draw the figure beside the window, then write it; Cancel stops it before that."""
+        if self._work is not None:
+            return
+        view, path = self.chosen_view(), Path(self.file.text()).expanduser()
+        fault = self._objection(view, path)
+        self.message.setText(fault)
+        if fault:
             return
         width, height = (
             box.value() if box.value() >= LEAST_SIDE else None
             for box in (self.width_box, self.height_box)
         )
-        path = Path(self.file.text()).expanduser()
-        fault = export_figure(self._session, view, path, width, height)
+        self.path = path
+        self._wait(Work(figure_task(self._session.resolved, view, path, width, height)))
+
+    def _objection(self, view: DiagramView, path: Path) -> str:
+        if view.window.height <= 0.0:
+            return "The time window ends before it begins."
+        if path.suffix.lower().removeprefix(".") not in FORMATS:
+            return "The file's name must end in " + ", ".join(f".{kind}" for kind in FORMATS) + "."
+        return self._guard.objection(path)
+
+    def _wait(self, work: Work) -> None:
+        self._work = work
+        work.done.connect(self._drawn)
+        work.failed.connect(self._stay)
+        self.buttons.button(QDialogButtonBox.StandardButton.Save).setEnabled(False)
+        self.message.setText("Drawing…")
+        work.start()
+
+    def _drawn(self, data: bytes) -> None:
+        # whoever cancelled wants no file
+        if not self.isVisible():
+            return
+        fault = write_figure(data, self.path)
+        if fault:
+            self._stay(fault)
+            return
+        self._work = None
+        super().accept()
+
+    def _stay(self, fault: str) -> None:
+        self._work = None
+        self.buttons.button(QDialogButtonBox.StandardButton.Save).setEnabled(True)
         self.message.setText(fault)
-        if not fault:
-            super().accept()
 
     def _fill_times(self) -> None:
         frame_id = self.frame.currentData()
@@ -139,6 +177,7 @@ class ExportFigureDialog(QDialog):
         name, _ = QFileDialog.getSaveFileName(self, "Export figure", self.file.text(), kinds)
         if name:
             self.file.setText(name)
+            self._guard.agree(Path(name))
 
 
 def _millimetres(value: float) -> QDoubleSpinBox:

@@ -23,6 +23,7 @@ from PySide6.QtWidgets import (
 
 from tauline.readouts import chosen_frames, event_table
 from tauline_app.actions.files import export_table
+from tauline_app.dialogs.overwrite import OverwriteGuard
 from tauline_app.session import Session
 
 FORMATS = {
@@ -54,7 +55,11 @@ class ExportTableDialog(QDialog):
         for name, (label, _) in FORMATS.items():
             self.form.addItem(label, name)
         self.file = QLineEdit(str((session.path or Path("events")).with_suffix(".csv")))
+        self.file.setAccessibleName("File")
+        self._guard = OverwriteGuard(session.path)
         self.message = QLabel()
+        self.message.setTextFormat(Qt.TextFormat.PlainText)
+        self.message.setAccessibleName("Message")
         self.message.setWordWrap(True)
         self._lay_out()
         self.form.currentIndexChanged.connect(self._end_in)
@@ -94,7 +99,9 @@ class ExportTableDialog(QDialog):
         resolved = self._session.resolved
         table = event_table(resolved, chosen_frames(resolved, ids), self._reference)
         path = Path(self.file.text()).expanduser()
-        fault = export_table(table, str(self.form.currentData()), path)
+        fault = self._guard.objection(path)
+        if not fault:
+            fault = export_table(table, str(self.form.currentData()), path)
         self.message.setText(fault)
         if not fault:
             super().accept()
@@ -110,3 +117,4 @@ class ExportTableDialog(QDialog):
         )
         if name:
             self.file.setText(name)
+            self._guard.agree(Path(name))

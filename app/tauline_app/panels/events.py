@@ -122,6 +122,7 @@ class EventsPanel(QWidget):
         self.view.verticalHeader().hide()
         self.view.verticalHeader().setDefaultSectionSize(24)
         self.view.horizontalHeader().setStretchLastSection(False)
+        self.view.horizontalHeader().setHighlightSections(False)
         self.view.selectionModel().selectionChanged.connect(self._rows_selected)
         self.menu = QMenu(self)
         self.menu.aboutToShow.connect(self._list_frames)

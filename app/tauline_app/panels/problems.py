@@ -34,7 +34,9 @@ class ProblemsPanel(QTableWidget):
         self.setShowGrid(False)
         self.setWordWrap(True)
         self.verticalHeader().hide()
+        self.verticalHeader().setSectionResizeMode(QHeaderView.ResizeMode.ResizeToContents)
         header = self.horizontalHeader()
+        header.setHighlightSections(False)
         header.setDefaultAlignment(Qt.AlignmentFlag.AlignLeft | Qt.AlignmentFlag.AlignVCenter)
         for column, mode in enumerate(
             (
@@ -62,7 +64,6 @@ class ProblemsPanel(QTableWidget):
                 cell = QTableWidgetItem(text)
                 cell.setToolTip(text)
                 self.setItem(row, column, cell)
-        self.resizeRowsToContents()
 
     def _chosen(self) -> None:
         rows = {index.row() for index in self.selectedIndexes()}

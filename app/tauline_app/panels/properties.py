@@ -10,6 +10,7 @@ from tauline.resolve.relations import owner_of
 from tauline.scenario.edit import Field, fields_of
 from tauline.scenario.objects import Broken, kind_of
 from tauline_app.actions.edits import change_field, change_parameter
+from tauline_app.panels.text import plain
 from tauline_app.session import Session
 
 StandardKey = QKeySequence.StandardKey
@@ -21,7 +22,8 @@ class PropertiesPanel(QScrollArea):
     def __init__(self, session: Session, parent: QWidget | None = None) -> None:
         super().__init__(parent)
         self._session = session
-        self._shown: tuple[str, tuple[str, ...]] = ("", ())
+        self._shown: tuple[str, tuple[str, ...]] | None = None
+        self.heading = QLabel()
         self.lines: dict[str, FieldLine] = {}
         self.setWidgetResizable(True)
         self.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
@@ -52,7 +54,10 @@ class PropertiesPanel(QScrollArea):
         form.setVerticalSpacing(5)
         form.setFieldGrowthPolicy(QFormLayout.FieldGrowthPolicy.AllNonFixedFieldsGrow)
         form.setLabelAlignment(Qt.AlignmentFlag.AlignRight)
-        form.addRow(self._heading(owner))
+        self.heading = QLabel()
+        self.heading.setWordWrap(True)
+        self.heading.setTextFormat(Qt.TextFormat.RichText)
+        form.addRow(self.heading)
         if owner:
             for field in fields:
                 self._add(form, owner, field.key, _hint(field))
@@ -64,23 +69,20 @@ class PropertiesPanel(QScrollArea):
             old.deleteLater()
         self.setWidget(page)
 
-    def _heading(self, owner: str) -> QLabel:
+    def _head(self, owner: str) -> str:
         scenario = self._session.scenario
         thing = scenario.find(owner) if owner else None
         if thing is None:
-            text = f"<b>{_plain(scenario.title) or 'Untitled scenario'}</b>"
+            text = f"<b>{plain(scenario.title) or 'Untitled scenario'}</b>"
             if scenario.description:
-                text += f"<br>{_plain(scenario.description)}"
+                text += f"<br>{plain(scenario.description)}"
             text += "<br><br>Parameters" if scenario.parameters else ""
         else:
-            text = f"<b>{_plain(thing.label or thing.id)}</b>, {kind_of(thing)}"
+            text = f"<b>{plain(thing.label or thing.id)}</b>, {kind_of(thing)}"
             if isinstance(thing, Broken):
-                faults = "<br>".join(_plain(str(fault)) for fault in thing.faults)
+                faults = "<br>".join(plain(str(fault)) for fault in thing.faults)
                 text += f"<br><br>It cannot be read as it stands; mend it in the file:<br>{faults}"
-        label = QLabel(text)
-        label.setWordWrap(True)
-        label.setTextFormat(Qt.TextFormat.RichText)
-        return label
+        return text
 
     def _add(self, form: QFormLayout, owner: str, key: str, hint: str) -> None:
         line = FieldLine(self._session, owner, key, hint)
@@ -91,6 +93,7 @@ class PropertiesPanel(QScrollArea):
         self.lines[key] = line
 
     def _fill(self, owner: str, fields: tuple[Field, ...]) -> None:
+        self.heading.setText(self._head(owner))
         faults: dict[str, str] = {}
         for diagnosis in self._session.resolved.faults:
             if diagnosis.object == owner:
@@ -117,6 +120,7 @@ class FieldLine(QLineEdit):
         self._document_fault = ""
         self.fault = QLabel()
         self.fault.setWordWrap(True)
+        self.fault.setTextFormat(Qt.TextFormat.PlainText)
         self.fault.setVisible(False)
         self.setPlaceholderText(hint)
         self.setAccessibleName(f"{key} of {owner}" if owner else f"parameter {key}")
@@ -197,7 +201,3 @@ def _hint(field: Field) -> str:
     if field.refers_to:
         return "id of " + " or ".join(field.refers_to)
     return "" if field.required else "not given"
-
-
-def _plain(text: str) -> str:
-    return text.replace("&", "&amp;").replace("<", "&lt;")

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import msgspec
-from PySide6.QtCore import QEasingCurve, QPointF, QRectF, Qt, QVariantAnimation, Signal
+from PySide6.QtCore import QEasingCurve, QPointF, QRectF, Qt, QVariantAnimation
 from PySide6.QtGui import (
     QColor,
     QFontMetricsF,
@@ -17,6 +17,7 @@ from PySide6.QtGui import (
 )
 from PySide6.QtWidgets import QSizePolicy, QToolTip, QWidget
 
+from tauline.figure.drawing import Role
 from tauline.figure.rail import Flag, flags, free_frame, ruler_marks
 from tauline.figure.style import SCREEN_LIGHT, Style
 from tauline.resolve import FrameResult
@@ -24,13 +25,15 @@ from tauline_app.session import Session
 from tauline_app.theme import hue_colour
 from tauline_app.viewing import ViewState, seen_from
 
-PIXELS_PER_RAPIDITY = 150.0
+WIDEST_SCALE, NARROWEST_SCALE = 150.0, 60.0
+"""Pixels to one unit of rapidity, as the width of the rail allows."""
 ROWS = 3
 ROW_HEIGHT = 19
 RULER_HEIGHT = 24
-MARGIN = 4
+MARGIN = 8
+LABEL_WIDTHS = (130.0, 56.0, 0.0)
+"""Greatest widths of a flag's name, tried in this order where flags crowd."""
 STEP = 0.05
-FAR = 6.0
 MILLISECONDS = 350
 FARTHEST = 12.0
 """Greatest rapidity the rail is dragged to."""
@@ -47,8 +50,6 @@ class PlacedFlag(msgspec.Struct, frozen=True):
 
 class Rail(QWidget):
     """Slides under a fixed mark; drag it, click a flag, or use the arrow keys."""
-
-    looked_from = Signal(str)
 
     def __init__(self, session: Session, parent: QWidget | None = None) -> None:
         super().__init__(parent)
@@ -150,7 +151,7 @@ class Rail(QWidget):
             self._moved = True
         if self._moved:
             # the ruler follows the hand, so what comes under the mark was on the other side
-            rapidity = start.frame.rapidity - shift / PIXELS_PER_RAPIDITY
+            rapidity = start.frame.rapidity - shift / self.pixels_per_rapidity
             self._show(start, max(-FARTHEST, min(FARTHEST, rapidity)))
 
     def mouseReleaseEvent(self, event: QMouseEvent) -> None:  # noqa: N802 - Qt's
@@ -180,7 +181,13 @@ class Rail(QWidget):
     def x_of(self, rapidity: float) -> float:
         """Where a rapidity (relative to the base frame) is on the rail, in pixels."""
         relative = rapidity - self._session.view.frame.rapidity
-        return 0.5 * self.width() + relative * PIXELS_PER_RAPIDITY
+        return 0.5 * self.width() + relative * self.pixels_per_rapidity
+
+    @property
+    def pixels_per_rapidity(self) -> float:
+        """Scale of the ruler: all its marks are in sight where there is room for them."""
+        room = (0.5 * self.width() - 40.0) / ruler_marks()[-1].rapidity
+        return min(max(room, NARROWEST_SCALE), WIDEST_SCALE)
 
     def flag_at(self, place: QPointF) -> PlacedFlag | None:
         """The flag under a place."""
@@ -200,15 +207,22 @@ class Rail(QWidget):
         }
         placed: list[PlacedFlag] = []
         rows = [-1e9] * ROWS
+        middle = 0.5 * self.width() - 0.5
         for flag in sorted(flags(session.resolved, scrubbed), key=lambda item: item.rapidity):
             foot = self.x_of(flag.rapidity)
             if not -200 < foot < self.width() + 200:
                 continue
-            text = metrics.elidedText(flag.label, Qt.TextElideMode.ElideRight, 130.0)
-            width = metrics.horizontalAdvance(text) + 12.0
-            left = min(max(foot - 2.0, 2.0), max(self.width() - width - 2.0, 2.0))
-            row = next((k for k in range(ROWS) if rows[k] <= left), None)
-            if row is None:
+            for widest in LABEL_WIDTHS:
+                text = metrics.elidedText(flag.label, Qt.TextElideMode.ElideRight, widest)
+                text = text if len(text) > 1 or text == flag.label else ""
+                width = metrics.horizontalAdvance(text) + 12.0
+                # to the left of the mark the names hang to the left, so that they stand clear of it
+                beside = foot - 2.0 if foot >= middle else foot - width + 2.0
+                left = min(max(beside, 2.0), max(self.width() - width - 2.0, 2.0))
+                row = next((k for k in range(ROWS) if rows[k] <= left), None)
+                if row is not None:
+                    break
+            else:
                 row = min(range(ROWS), key=lambda k: rows[k])
                 left = rows[row]
             rows[row] = left + width + 3.0
@@ -224,10 +238,11 @@ class Rail(QWidget):
         painter.fillRect(self.rect(), self.palette().color(QPalette.ColorRole.Base))
         ink = self.palette().color(QPalette.ColorRole.Text)
         ruler = float(MARGIN + ROWS * ROW_HEIGHT)
+        self._paint_mark(painter, ruler)
         self._paint_ruler(painter, ink, ruler)
         viewed = self._session.view.frame
         for item in self.placed_flags():
-            colour = hue_colour(self._style, item.flag.hue)
+            colour = hue_colour(self._style, item.flag.hue, Role.LINE_LABEL)
             painter.setPen(QPen(colour, 1.4))
             painter.drawLine(QPointF(item.foot, item.box.top()), QPointF(item.foot, ruler))
             current = abs(item.flag.rapidity - viewed.rapidity) < 1e-12
@@ -250,21 +265,38 @@ class Rail(QWidget):
         small.setPixelSize(round(self._style.small_size))
         painter.setFont(small)
         metrics = QFontMetricsF(small)
-        for mark in ruler_marks():
-            x = middle + mark.rapidity * PIXELS_PER_RAPIDITY
-            half = 0.5 * metrics.horizontalAdvance(mark.text)
-            if half + 2.0 < x < self.width() - half - 2.0:
-                painter.drawLine(QPointF(x, top), QPointF(x, top + 5.0))
-                painter.drawText(QPointF(x - half, top + 6.0 + metrics.ascent()), mark.text)
+        baseline = top + 6.0 + metrics.ascent()
+        painter.drawText(QPointF(4.0, baseline), "β")
+        marks = ruler_marks()
+        halves = {mark.text: 0.5 * metrics.horizontalAdvance(mark.text) for mark in marks}
+        # the zero, then from the ends inwards; both sides of a pair or neither
+        inner = halves["0"] + 2.0
+        outer = middle - metrics.horizontalAdvance("β") - 10.0
+        for mark in sorted(marks, key=lambda mark: -abs(mark.rapidity)):
+            away = mark.rapidity * self.pixels_per_rapidity
+            painter.drawLine(QPointF(middle + away, top), QPointF(middle + away, top + 5.0))
+            half = halves[mark.text]
+            widest = max(half, halves.get(f"−{mark.text}", 0.0))
+            if away == 0.0 or (inner <= abs(away) - widest and abs(away) + widest <= outer):
+                painter.drawText(QPointF(middle + away - half, baseline), mark.text)
+                if away > 0.0:
+                    outer = away - widest - 2.0
         painter.setFont(self.font())
-        painter.setBrush(ink)
+
+    def _paint_mark(self, painter: QPainter, bottom: float) -> None:
+        """The fixed mark of the viewing frame, which the flags slide under."""
+        middle = 0.5 * self.width()
+        colour = self.palette().color(QPalette.ColorRole.Highlight)
+        painter.setPen(QPen(colour, 1.0))
+        painter.drawLine(QPointF(middle, 0.0), QPointF(middle, bottom + 5.0))
+        painter.setBrush(colour)
         painter.setPen(Qt.PenStyle.NoPen)
         painter.drawPolygon(
             QPolygonF(
                 [
-                    QPointF(middle, top),
-                    QPointF(middle - 5.0, top - 8.0),
-                    QPointF(middle + 5.0, top - 8.0),
+                    QPointF(middle, 7.0),
+                    QPointF(middle - 5.0, 0.0),
+                    QPointF(middle + 5.0, 0.0),
                 ]
             )
         )

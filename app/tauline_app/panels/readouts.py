@@ -19,7 +19,7 @@ from PySide6.QtWidgets import (
 from tauline.readouts import Readout, readouts_for
 from tauline_app.session import Session
 
-VALUE_WIDTH, FRAME_WIDTH = 128, 82
+VALUE_WIDTH, FRAME_WIDTH, WIDEST_FRAME = 128, 82, 130
 ROW_PADDING = 6
 HINT = "Select an event, a worldline or a signal; with Shift or Ctrl, a second one."
 
@@ -49,6 +49,7 @@ class ReadoutsPanel(QWidget):
         self.table.setWordWrap(True)
         self.table.verticalHeader().hide()
         header = self.table.horizontalHeader()
+        header.setHighlightSections(False)
         header.setDefaultAlignment(Qt.AlignmentFlag.AlignLeft | Qt.AlignmentFlag.AlignVCenter)
         right = Qt.AlignmentFlag.AlignRight | Qt.AlignmentFlag.AlignVCenter
         value_head = QTableWidgetItem("Value")
@@ -63,6 +64,7 @@ class ReadoutsPanel(QWidget):
         head = QHBoxLayout()
         self.title = QLabel()
         self.title.setWordWrap(True)
+        self.title.setTextFormat(Qt.TextFormat.PlainText)
         head.addWidget(self.title, 1)
         head.addWidget(QLabel("Digits"))
         head.addWidget(self._digits)
@@ -123,6 +125,8 @@ class ReadoutsPanel(QWidget):
                         Qt.AlignmentFlag.AlignRight | Qt.AlignmentFlag.AlignVCenter
                     )
                 self.table.setItem(row, column, cell)
+        wanted = self.table.sizeHintForColumn(2) + 4
+        self.table.setColumnWidth(2, min(max(wanted, FRAME_WIDTH), WIDEST_FRAME))
         self.table.resizeRowsToContents()
         for row in range(self.table.rowCount()):
             self.table.setRowHeight(row, self.table.rowHeight(row) + ROW_PADDING)

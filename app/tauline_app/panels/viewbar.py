@@ -3,18 +3,31 @@
 from __future__ import annotations
 
 import msgspec
-from PySide6.QtGui import QPalette
-from PySide6.QtWidgets import QComboBox, QHBoxLayout, QLabel, QLineEdit, QVBoxLayout, QWidget
+from PySide6.QtCore import Qt
+from PySide6.QtGui import QPalette, QResizeEvent
+from PySide6.QtWidgets import (
+    QBoxLayout,
+    QComboBox,
+    QHBoxLayout,
+    QLabel,
+    QLineEdit,
+    QSizePolicy,
+    QVBoxLayout,
+    QWidget,
+)
 
 from tauline.errors import QuantityError
-from tauline.figure.rail import free_frame, typed_rapidity
+from tauline.figure.rail import typed_rapidity
 from tauline.figure.style import Style
 from tauline.readouts import format_number
 from tauline.readouts.observers import velocity_readouts
 from tauline_app.panels.rail import Rail
+from tauline_app.panels.text import plain
 from tauline_app.session import Session
+from tauline_app.viewing import frame_at
 
-DIGITS = 5
+DIGITS = 4
+ROOM_FOR_ONE_LINE = 750
 
 
 class ViewBar(QWidget):
@@ -25,35 +38,51 @@ class ViewBar(QWidget):
         self._session = session
         self.rail = Rail(session, self)
         self.velocity = QLineEdit()
-        self.velocity.setPlaceholderText("0.6 c, φ = 1.2, …")
+        self.velocity.setPlaceholderText("0.6 c, φ = 1.2")
         self.velocity.setAccessibleName("Velocity to look from")
-        self.velocity.setMaximumWidth(150)
+        self.velocity.setFixedWidth(108)
         self.velocity.setToolTip("A velocity relative to the base frame; Enter looks from there")
         self.velocity.returnPressed.connect(self._typed)
+        self.velocity.textEdited.connect(lambda: self._complain(""))
         self.fault = QLabel()
+        self.fault.setTextFormat(Qt.TextFormat.PlainText)
+        self.fault.setWordWrap(True)
+        self.fault.setAlignment(Qt.AlignmentFlag.AlignRight)
+        self.fault.setContentsMargins(8, 0, 8, 3)
+        self.fault.hide()
         self.where = QLabel()
+        # clipped in a narrow window rather than keeping the window wide; the tool tip has it all
+        self.where.setSizePolicy(QSizePolicy.Policy.Ignored, QSizePolicy.Policy.Preferred)
         self.where.setAccessibleName("Viewing frame")
         self.pivot = QComboBox()
         self.pivot.setAccessibleName("Pivot event")
         self.pivot.setToolTip("The event that keeps its place while the velocity changes")
-        self.pivot.setSizeAdjustPolicy(QComboBox.SizeAdjustPolicy.AdjustToContents)
+        self.pivot.setSizeAdjustPolicy(
+            QComboBox.SizeAdjustPolicy.AdjustToMinimumContentsLengthWithIcon
+        )
+        self.pivot.setMinimumContentsLength(7)
         self.pivot.activated.connect(self._pivot_chosen)
-        line = QHBoxLayout()
-        line.setContentsMargins(8, 2, 8, 2)
-        line.addWidget(self.where, 1)
-        line.addWidget(self.fault)
-        line.addWidget(QLabel("Pivot"))
-        line.addWidget(self.pivot)
-        line.addSpacing(10)
+        controls = QHBoxLayout()
+        controls.setSpacing(7)
+        controls.addStretch(1)
+        controls.addWidget(QLabel("Pivot"))
+        controls.addWidget(self.pivot)
+        controls.addSpacing(8)
         name = QLabel("Look from")
         name.setBuddy(self.velocity)
-        line.addWidget(name)
-        line.addWidget(self.velocity)
+        controls.addWidget(name)
+        controls.addWidget(self.velocity)
+        self._line = QBoxLayout(QBoxLayout.Direction.LeftToRight)
+        self._line.setContentsMargins(8, 3, 8, 3)
+        self._line.setSpacing(5)
+        self._line.addWidget(self.where, 1)
+        self._line.addLayout(controls)
         layout = QVBoxLayout(self)
         layout.setContentsMargins(0, 0, 0, 0)
         layout.setSpacing(0)
         layout.addWidget(self.rail)
-        layout.addLayout(line)
+        layout.addLayout(self._line)
+        layout.addWidget(self.fault)
         session.view_changed.connect(self.refresh)
         session.document_changed.connect(self._list_pivots)
         self._list_pivots()
@@ -62,6 +91,13 @@ class ViewBar(QWidget):
     def set_style(self, style: Style) -> None:
         """Paint the rail in another style."""
         self.rail.set_style(style)
+
+    def resizeEvent(self, event: QResizeEvent) -> None:  # noqa: N802 - Qt's
+        """Set the controls below the frame where there is no room beside it."""
+        super().resizeEvent(event)
+        direction = QBoxLayout.Direction
+        narrow = event.size().width() < ROOM_FOR_ONE_LINE
+        self._line.setDirection(direction.TopToBottom if narrow else direction.LeftToRight)
 
     def refresh(self) -> None:
         """Say from where the diagram is seen."""
@@ -72,10 +108,10 @@ class ViewBar(QWidget):
             for item in velocity_readouts(resolved.units, frame.rapidity, resolved.base)
             if item.number is not None
         )
-        name = frame.label or frame.id if frame.id else "a velocity of your own"
-        self.where.setText(
-            f"Seen from <b>{name}</b> &nbsp; {numbers} &nbsp; relative to {resolved.base.label}"
-        )
+        name = frame.label or frame.id if frame.id else "a free frame"
+        base = resolved.base.label or resolved.base.id
+        self.where.setText(f"Seen from <b>{plain(name)}</b>: {numbers} rel. to {plain(base)}")
+        self.where.setToolTip(f"Seen from {plain(name)}: {numbers} relative to {plain(base)}")
 
     def _list_pivots(self) -> None:
         self.pivot.clear()
@@ -96,10 +132,11 @@ class ViewBar(QWidget):
             self._complain(str(error))
             return
         self._complain("")
-        self.rail.look_from(free_frame(self._session.resolved, rapidity))
+        self.rail.look_from(frame_at(self._session.resolved, rapidity))
 
     def _complain(self, text: str) -> None:
         self.fault.setText(text)
+        self.fault.setVisible(bool(text))
         palette = self.fault.palette()
         palette.setColor(
             QPalette.ColorRole.WindowText, self.palette().color(QPalette.ColorRole.BrightText)

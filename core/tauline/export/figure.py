@@ -3,6 +3,9 @@
 from __future__ import annotations
 
 import io
+import math
+import warnings
+from collections import Counter
 from pathlib import Path
 from typing import TYPE_CHECKING, Any
 
@@ -10,12 +13,13 @@ import msgspec
 import numpy as np
 
 from tauline.errors import ExportError
-from tauline.export.measure import FAMILY, PrintMeasure
+from tauline.export.measure import FAMILY, PrintMeasure, families
 from tauline.figure.arrows import arrow_head
 from tauline.figure.diagram import diagram
 from tauline.figure.drawing import Drawing, Label, Points, Role, Run, Window
 from tauline.figure.measure import DESCENT, SUB_DROP, SUB_SIZE
 from tauline.figure.style import PRINT, Colour, Style
+from tauline.figure.symbols import one_line
 from tauline.figure.view import DiagramView, default_view, window_for_aspect
 from tauline.files import replace_file
 from tauline.resolve.results import Resolved
@@ -29,7 +33,8 @@ FORMATS = ("pdf", "svg", "png")
 DEFAULT_WIDTH = 130.0
 GREATEST_HEIGHT = 190.0
 """Millimetres: a page's width and height with room for its margins."""
-LEAST_SIDE, GREATEST_SIDE = 20.0, 2000.0
+LEAST_SIDE, LEAST_WIDTH, GREATEST_SIDE = 20.0, 60.0, 2000.0
+"""Least side, least width where none was asked for, greatest side."""
 PIXELS_PER_INCH = 300
 CAPTION_GAP = 6.0
 
@@ -91,7 +96,10 @@ def figure_bytes(
                 f"from {LEAST_SIDE:g} to {GREATEST_SIDE:g} mm",
             )
     measure = PrintMeasure(style)
-    width, height = _page(view.window, width_mm, height_mm)
+    width, height = _page_size(view.window, width_mm, height_mm)
+    if height_mm is None:
+        # a tall or a flat window is widened: the page's sides are bounded
+        view = msgspec.structs.replace(view, window=window_for_aspect(view.window, width / height))
     lines = 0
     if "caption" in view.layers:
         probe = diagram(resolved, view, width / view.window.width, measure).caption
@@ -116,18 +124,25 @@ def drawing_bytes(
         "svg.fonttype": "none",
         "svg.hashsalt": "tauline",
         "font.family": [FAMILY],
+        "font.sans-serif": [FAMILY],
         "path.simplify": False,
         "text.parse_math": False,
+        # runs are set side by side, so their widths must be those measured
+        "text.hinting": "none",
     }
     width = drawing.window.width * drawing.scale
     height = drawing.window.height * drawing.scale + below
-    with mpl.rc_context(settings):
+    with mpl.rc_context(settings), warnings.catch_warnings():
+        # a sign that no installed font has is drawn as a box
+        warnings.filterwarnings("ignore", message="Glyph .* missing")
         figure = Figure(figsize=(width / 72.0, height / 72.0), facecolor=_hex(style.ground))
         axes = figure.add_axes((0.0, 0.0, 1.0, 1.0))
         axes.set_axis_off()
         axes.set_xlim(0.0, width)
         axes.set_ylim(0.0, height)
-        _Painter(axes, drawing, style, below).paint()
+        # an SVG file is set with the fonts of whoever looks at it
+        generic = ("sans-serif",) if kind == "svg" else ()
+        _Painter(axes, drawing, style, below, generic).paint()
         buffer = io.BytesIO()
         figure.savefig(
             buffer, format=kind, dpi=PIXELS_PER_INCH, metadata=_metadata(kind, drawing, description)
@@ -137,37 +152,59 @@ def drawing_bytes(
 
 def wrapped(runs: tuple[Run, ...], width: float, measure: PrintMeasure) -> list[list[Run]]:
     """Break runs into lines no wider than ``width`` (points), between words."""
-    pieces = [Run(word, run.style) for run in runs for word in _words(run.text)]
+    words: list[list[Run]] = [[]]
+    for run in runs:
+        for part in _words(run.text):
+            words[-1].append(Run(part, run.style))
+            if part.endswith(" "):
+                words.append([])
     lines: list[list[Run]] = [[]]
     used = 0.0
-    for piece in pieces:
-        own = measure.size((piece,), Role.CAPTION)[0]
-        if lines[-1] and used + measure.size((Run(piece.text.rstrip()),), Role.CAPTION)[0] > width:
+    for word in words:
+        # the space after a word may hang over
+        bare = (*word[:-1], Run(word[-1].text.rstrip(), word[-1].style)) if word else ()
+        if lines[-1] and used + measure.size(bare, Role.CAPTION)[0] > width:
             lines.append([])
             used = 0.0
-            piece = Run(piece.text.lstrip(), piece.style)
-        lines[-1].append(piece)
-        used += own
-    return [line for line in lines if line]
+        lines[-1] += word
+        used += measure.size(tuple(word), Role.CAPTION)[0]
+    return [_merged(line) for line in lines if line]
+
+
+def _merged(pieces: list[Run]) -> list[Run]:
+    """Join neighbours of one style: whoever copies or searches the text meets whole phrases."""
+    runs: list[Run] = []
+    for piece in pieces:
+        if runs and runs[-1].style == piece.style:
+            runs[-1] = Run(runs[-1].text + piece.text, piece.style)
+        else:
+            runs.append(piece)
+    return runs
 
 
 class _Painter:
     """Turns the primitives of a drawing into matplotlib artists, back to front."""
 
-    def __init__(self, axes: Axes, drawing: Drawing, style: Style, below: float) -> None:
+    def __init__(
+        self, axes: Axes, drawing: Drawing, style: Style, below: float, generic: tuple[str, ...]
+    ) -> None:
         self._axes = axes
         self._drawing = drawing
         self._style = style
         self._shift = np.array([0.0, below])
         self._measure = PrintMeasure(style)
         self._depth = 0
+        self._generic = generic
+        self._groups: Counter[str] = Counter()
 
     def paint(self) -> None:
         from matplotlib.lines import Line2D
 
         for fill in self._drawing.fills:
             self._polygon(
-                self._page(fill.points), self._style.colour(fill.role, fill.hue), fill.source
+                self._page(fill.points),
+                self._style.colour(fill.role, fill.hue),
+                self._group(fill.role, fill.source),
             )
         for stroke in self._drawing.strokes:
             points = self._page(stroke.points)
@@ -181,7 +218,7 @@ class _Painter:
                 dash_capstyle="butt",
                 solid_joinstyle="round",
                 zorder=self._next(),
-                gid=_group(stroke.role, stroke.source),
+                gid=self._group(stroke.role, stroke.source),
             )
             dash = self._style.dash(stroke.role, stroke.hue)
             if dash:
@@ -189,7 +226,7 @@ class _Painter:
             self._axes.add_line(line)
             head = None if stroke.arrow is None else arrow_head(points, stroke.arrow)
             if head is not None:
-                self._polygon(head, colour, stroke.source)
+                self._polygon(head, colour, self._group(stroke.role, stroke.source))
         for marker in self._drawing.markers:
             self._marker(marker.role, marker.hue, marker.at, marker.source)
         for label in self._drawing.labels:
@@ -204,7 +241,16 @@ class _Painter:
         self._depth += 1
         return self._depth
 
-    def _polygon(self, points: Points, colour: Colour, source: str) -> None:
+    def _group(self, role: Role, source: str) -> str | None:
+        """Id of a group in an SVG file: ``role:source``, numbered from the second on."""
+        if not source:
+            return None
+        name = f"{role}:{source}"
+        self._groups[name] += 1
+        count = self._groups[name]
+        return name if count == 1 else f"{name}:{count}"
+
+    def _polygon(self, points: Points, colour: Colour, gid: str | None) -> None:
         from matplotlib.patches import Polygon
 
         self._axes.add_patch(
@@ -215,7 +261,7 @@ class _Painter:
                 edgecolor="none",
                 linewidth=0.0,
                 zorder=self._next(),
-                gid=source or None,
+                gid=gid,
             )
         )
 
@@ -235,12 +281,15 @@ class _Painter:
                     edgecolor=colour,
                     linewidth=0.8,
                     zorder=self._next(),
-                    gid=_group(role, source),
+                    gid=self._group(role, source),
                 )
             )
             return
         cased = radius + self._style.casing
-        for size, paint, gid in ((cased, ground, None), (radius, colour, _group(role, source))):
+        for size, paint, gid in (
+            (cased, ground, None),
+            (radius, colour, self._group(role, source)),
+        ):
             self._axes.add_patch(
                 Circle(
                     (float(centre[0]), float(centre[1])),
@@ -275,17 +324,21 @@ class _Painter:
         x, baseline = float(corner[0]), float(corner[1]) + DESCENT * size
         for run in runs:
             sub = run.style == "sub"
+            # SVG drops spaces in front of a text
+            text = run.text.lstrip(" ")
+            indent = self._measure.width(Run(" ", run.style), size) * (len(run.text) - len(text))
             self._axes.text(
-                x,
+                x + indent,
                 baseline - (SUB_DROP * size if sub else 0.0),
-                run.text,
+                text,
+                fontfamily=[*families(text), *self._generic],
                 fontsize=size * SUB_SIZE if sub else size,
                 fontstyle="italic" if run.style == "italic" else "normal",
                 color=_hex(colour),
                 ha="left",
                 va="baseline",
                 zorder=self._next(),
-                gid=_group(role, source),
+                gid=self._group(role, source),
             )
             x += self._measure.width(run, size)
 
@@ -295,18 +348,21 @@ def _words(text: str) -> list[str]:
     return [part + " " for part in parts[:-1]] + ([parts[-1]] if parts[-1] else [])
 
 
-def _page(window: Window, width_mm: float | None, height_mm: float | None) -> tuple[float, float]:
+def _page_size(
+    window: Window, width_mm: float | None, height_mm: float | None
+) -> tuple[float, float]:
     """Width and height in points; the height without the caption where it is not given."""
     aspect = window.width / window.height
+    tallest = GREATEST_SIDE
     if width_mm is None and height_mm is None:
-        width_mm = min(DEFAULT_WIDTH, GREATEST_HEIGHT * aspect)
-        width_mm = max(width_mm, LEAST_SIDE * 3)
+        tallest = GREATEST_HEIGHT
+        width_mm = max(min(DEFAULT_WIDTH, tallest * aspect), LEAST_WIDTH)
     if width_mm is None:
         assert height_mm is not None
         width_mm = min(max(height_mm * aspect, LEAST_SIDE), GREATEST_SIDE)
-    width = width_mm * POINTS_PER_MM
-    height = width / aspect if height_mm is None else height_mm * POINTS_PER_MM
-    return width, height
+    if height_mm is None:
+        height_mm = min(max(width_mm / aspect, LEAST_SIDE), tallest)
+    return width_mm * POINTS_PER_MM, height_mm * POINTS_PER_MM
 
 
 def _cut(
@@ -317,6 +373,8 @@ def _cut(
 ) -> Window:
     units = resolved.units
     for given in (time_window, place_window):
+        if given is not None and not all(math.isfinite(value) for value in given):
+            raise ExportError(f"a window from {given[0]:g} to {given[1]:g} has no bounds")
         if given is not None and not given[0] < given[1]:
             raise ExportError(f"a window from {given[0]:g} to {given[1]:g} is empty")
     t0, t1 = (
@@ -336,17 +394,13 @@ def _metadata(kind: str, drawing: Drawing, description: str) -> dict[str, Any]:
     from tauline import __version__
 
     title, program = drawing.title or "Spacetime diagram", f"Tauline {__version__}"
-    about = " ".join(description.split())
+    about = one_line(description)
     if kind == "pdf":
         # no date: the same scenario gives the same bytes
         return {"Title": title, "Subject": about, "Creator": program, "CreationDate": None}
     if kind == "svg":
         return {"Title": title, "Description": about, "Creator": program, "Date": None}
     return {"Title": title, "Description": about, "Software": program}
-
-
-def _group(role: Role, source: str) -> str | None:
-    return f"{role}:{source}" if source else None
 
 
 def _hex(colour: Colour) -> str:

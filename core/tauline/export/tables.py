@@ -77,7 +77,8 @@ def _guarded(text: str) -> str:
 
 
 def _full(cell: Cell) -> str:
-    return cell if isinstance(cell, str) else repr(cell)
+    """A guarded text, or a number with all its digits."""
+    return _guarded(cell) if isinstance(cell, str) else repr(cell)
 
 
 def _csv(table: EventTable) -> str:
@@ -87,13 +88,13 @@ def _csv(table: EventTable) -> str:
     writer = csv.writer(out, lineterminator="\r\n")
     writer.writerow([_guarded(_header(column)) for column in grid.columns])
     for row in grid.rows:
-        writer.writerow([_guarded(c) if isinstance(c, str) else repr(c) for c in row])
+        writer.writerow([_full(cell) for cell in row])
     return out.getvalue()
 
 
 def _tsv(table: EventTable) -> str:
     grid = _grid(table)
-    lines = [[_header(column) for column in grid.columns], *map(list, _texts(grid, _full))]
+    lines = [[_header(column) for column in grid.columns], *_texts(grid, _full)]
     return "".join("\t".join(" ".join(c.split()) for c in line) + "\n" for line in lines)
 
 

@@ -22,15 +22,19 @@ NUMBER_SPACING = 42.0
 EDGE = 12.0
 """Distance, in points, from the window's edge of an axis whose zero lies outside."""
 MAJOR, MINOR = 6.0, 3.5
+LEAST_SINE, MOST_STRETCH = 0.55, 2.5
+"""Where a frame's axes close in on each other below this, their ticks are longer, up to so much."""
 
 
 class AxisText(msgspec.Struct, frozen=True, kw_only=True):
     """A number or a title to be placed beside an axis.
 
     ``aside`` is the unit vector on the page towards the side where it should stand, ``along``
-    that along the axis.
+    that along the axis. ``axis`` names the axis, ``primary`` says that it is the viewing frame's.
     """
 
+    axis: str
+    primary: bool
     role: Role
     hue: int
     at: Points
@@ -99,10 +103,17 @@ def axis_strokes(scene: Scene, axis: Axis) -> Iterator[Stroke]:
         (_places(scene, axis, minor_step(axis.step)), MINOR),
         (_places(scene, axis, axis.step), MAJOR),
     ):
-        half = axis.across * (0.5 * length / scene.scale / float(np.hypot(*axis.across)))
+        half = 0.5 * length / scene.scale * _tick_direction(axis)
         for s in values:
             at = axis.at + s * axis.direction
             yield Stroke(role=Role.AXIS_TICK, hue=hue, points=np.array([at - half, at + half]))
+
+
+def _tick_direction(axis: Axis) -> Points:
+    """Along the frame's other axis; longer where both run close together, to stay visible."""
+    along, across = (d / float(np.hypot(*d)) for d in (axis.direction, axis.across))
+    sine = abs(float(along[0] * across[1] - along[1] * across[0]))
+    return np.asarray(across * min(max(LEAST_SINE / max(sine, 1e-9), 1.0), MOST_STRETCH))
 
 
 def axis_texts(scene: Scene, axis: Axis) -> Iterator[AxisText]:
@@ -117,7 +128,10 @@ def axis_texts(scene: Scene, axis: Axis) -> Iterator[AxisText]:
     outer = -right if axis.name == "t" else right
     relative = axis.frame.rapidity - scene.view.frame.rapidity
     aside = outer if axis.primary or relative < 0.0 else -outer
+    name = f"{axis.frame.id} {axis.name}"
     yield AxisText(
+        axis=name,
+        primary=axis.primary,
         role=Role.AXIS_TITLE,
         hue=hue,
         at=axis.at + axis.span[1] * axis.direction,
@@ -131,6 +145,8 @@ def axis_texts(scene: Scene, axis: Axis) -> Iterator[AxisText]:
         if abs(value) < 0.5 * axis.step and _zero_is_written(scene, axis):
             continue
         yield AxisText(
+            axis=name,
+            primary=axis.primary,
             role=Role.AXIS_NUMBER,
             hue=hue,
             at=axis.at + s * axis.direction,

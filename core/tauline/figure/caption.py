@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from tauline.figure.drawing import Run
-from tauline.figure.symbols import mark
+from tauline.figure.symbols import mark, one_line
 from tauline.figure.view import DiagramView
 from tauline.readouts.readout import format_number
 from tauline.resolve.results import FrameResult, Resolved
@@ -39,4 +39,4 @@ def speed(rapidity: float) -> tuple[Run, ...]:
 
 
 def _name(frame: FrameResult) -> str:
-    return frame.label or frame.id or "a frame of its own"
+    return one_line(frame.label) or frame.id or "a frame of its own"

@@ -85,7 +85,7 @@ def _inside(first: Points, last: Points, window: Window) -> tuple[Points, Points
     """Shares of each segment at which it enters and leaves the window."""
     step = last - first
     enter, leave = np.zeros(len(first)), np.ones(len(first))
-    with np.errstate(divide="ignore", invalid="ignore"):
+    with np.errstate(divide="ignore", invalid="ignore", over="ignore"):
         for axis, low, high in ((0, window.x0, window.x1), (1, window.t0, window.t1)):
             one = (low - first[:, axis]) / step[:, axis]
             other = (high - first[:, axis]) / step[:, axis]

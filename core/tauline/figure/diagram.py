@@ -16,22 +16,15 @@ from tauline.figure.axes import (
     grid_strokes,
     hyperbola_strokes,
 )
+from tauline.figure.candidates import BESIDE, along_line, around_point, beside
 from tauline.figure.caption import caption
+from tauline.figure.cover import Cover, segments_of
 from tauline.figure.drawing import Drawing, Fill, Label, Marker, Points, Role, Run, Stroke
-from tauline.figure.labels import (
-    LEADER_FROM,
-    Key,
-    Placed,
-    Request,
-    along_line,
-    around_point,
-    beside,
-    place_labels,
-    segments_of,
-)
+from tauline.figure.labels import Key, Placed, Request, leader_of, place_labels
 from tauline.figure.measure import TextMeasure
 from tauline.figure.sheets import body_fills, light_cone_parts
 from tauline.figure.strokes import Scene
+from tauline.figure.symbols import one_line
 from tauline.figure.view import DiagramView
 from tauline.resolve.results import EventResult, Resolved, SignalResult
 
@@ -87,7 +80,7 @@ def diagram(
         markers=tuple(markers),
         labels=labels,
         caption=caption(resolved, view) if "caption" in view.layers else (),
-        title=resolved.scenario.title,
+        title=one_line(resolved.scenario.title),
         choices=choices,
     )
 
@@ -149,37 +142,28 @@ def _labels(
     lines = [stroke for stroke in strokes if stroke.role in KEPT_OFF]
     obstacles = segments_of(on_page(stroke.points) for stroke in lines)
     dots = np.array([(*on_page(np.asarray(marker.at)), 3.5) for marker in markers]).reshape(-1, 3)
-    requests: list[Request] = []
+    titles = [text for text in texts if text.role is Role.AXIS_TITLE]
+    own = [text for text in texts if text.role is Role.AXIS_NUMBER and text.primary]
+    others = [text for text in texts if text.role is Role.AXIS_NUMBER and not text.primary]
+    # the least free to move first; numbers beside tilted lines come last: they can be spared
+    requests = [*_axis_requests(titles, measure, on_page), *_axis_requests(own, measure, on_page)]
     if "labels" in scene.view.layers:
         requests += _event_requests(scene, measure, on_page)
         requests += _line_requests(scene, strokes, measure, on_page)
+    requests += _axis_requests(others, measure, on_page)
     if "clock_ticks" in scene.view.layers:
         requests += _clock_requests(scene, measure, on_page)
-    requests += _axis_requests(texts, measure, on_page)
     requests = _without_doubles(requests)
-    requests.sort(key=lambda request: _ORDER[request.role])
-    placed = place_labels(
-        requests,
-        obstacles,
-        dots,
-        (w.width * scene.scale, w.height * scene.scale),
-        previous.choices if previous is not None else None,
-    )
+    page = (w.width * scene.scale, w.height * scene.scale)
+    kept = previous.choices if previous is not None else None
+    placed = place_labels(requests, Cover(obstacles, dots, page), kept)
     labels = tuple(_label(item, corner, scene.scale) for item in placed)
     leaders = [
-        leader for item in placed if (leader := _leader(item, corner, scene.scale)) is not None
+        Stroke(source=item.request.source, role=Role.LEADER, points=ends / scene.scale + corner)
+        for item in placed
+        if (ends := leader_of(item)) is not None
     ]
     return labels, leaders, {item.request.key: item.choice for item in placed}
-
-
-_ORDER = {
-    Role.AXIS_TITLE: 0,
-    Role.EVENT_LABEL: 1,
-    Role.AXIS_NUMBER: 2,
-    Role.LINE_LABEL: 3,
-    Role.CLOCK_NUMBER: 4,
-}
-"""The least free to move first; clock numbers come last, since they can be spared."""
 
 
 def _without_doubles(requests: Sequence[Request]) -> list[Request]:
@@ -211,11 +195,12 @@ def _event_requests(scene: Scene, measure: TextMeasure, on_page: _ToPage) -> Ite
             size=size,
             boxes=around_point(at, size, EVENT_GAP),
             anchors=at,
+            leads=True,
         )
 
 
 def _event_name(event: EventResult) -> str:
-    return event.label or event.id
+    return one_line(event.label) or event.id
 
 
 def _line_requests(
@@ -230,7 +215,7 @@ def _line_requests(
     for source, stroke in longest.items():
         result = scene.resolved.worldlines.get(source)
         thing = result or scene.resolved.simultaneities[source]
-        name = thing.label or (thing.id if result is not None else "")
+        name = one_line(thing.label) or (thing.id if result is not None else "")
         if not name:
             continue
         runs = (Run(name),)
@@ -261,6 +246,8 @@ def _clock_requests(scene: Scene, measure: TextMeasure, on_page: _ToPage) -> Ite
             boxes=beside(at, number.aside, size, CLOCK_GAP),
             anchors=at,
             optional=True,
+            row=number.source,
+            sides=BESIDE,
         )
 
 
@@ -284,6 +271,8 @@ def _axis_requests(
             boxes=boxes,
             anchors=at,
             optional=text.role is Role.AXIS_NUMBER,
+            row=text.axis if text.role is Role.AXIS_NUMBER else "",
+            sides=BESIDE if text.role is Role.AXIS_NUMBER else (),
         )
 
 
@@ -298,20 +287,5 @@ def _label(item: Placed, corner: Points, scale: float) -> Label:
         offset=(float(offset[0]), float(offset[1])),
         size=item.request.size,
         runs=item.request.runs,
-        overlaps=item.cost > 0.0,
+        overlaps=item.overlaps,
     )
-
-
-def _leader(item: Placed, corner: Points, scale: float) -> Stroke | None:
-    """A line from a label that had to go far to the point it names."""
-    if item.request.role is not Role.EVENT_LABEL:
-        return None
-    low, high = item.corner, item.corner + np.asarray(item.request.size)
-    nearest = np.clip(item.anchor, low, high)
-    gap = nearest - item.anchor
-    distance = float(np.hypot(*gap))
-    if distance < LEADER_FROM:
-        return None
-    start = item.anchor + gap * (4.0 / distance)
-    ends = np.array([start, nearest]) / scale + corner
-    return Stroke(source=item.request.source, role=Role.LEADER, points=ends)

@@ -1,30 +1,35 @@
 """Placing labels where they cover nothing: deterministic, and steady while a view is dragged.
 
 Works in points on the page (x right, y up, from the window's lower left corner). Every label
-brings candidate boxes in order of preference; it takes the first that is free, else the one that
-covers least.
+brings candidate places in order of preference; it takes the first that is free, else the one
+that covers least.
 """
 
 from __future__ import annotations
 
-from collections.abc import Iterable, Mapping, Sequence
+from collections.abc import Mapping, Sequence
 
 import msgspec
 import numpy as np
 from numpy.typing import NDArray
 
+from tauline.figure.cover import Cover
 from tauline.figure.drawing import Role, Run
 
 Array = NDArray[np.float64]
 Key = tuple[str, str, str]
-"""Source, role and text of a label: what it is recognised by from one placement to the next."""
+"""Source (or row), role and text of a label: what it is recognised by in the next placement."""
 
-CLEARANCE = 1.5
-"""Points kept free around a label."""
 LEADER_FROM = 20.0
-"""A label farther than this from its point gets a leader line."""
-
-_OUTSIDE, _ON_LABEL, _ON_MARKER, _ON_LINE = 1000.0, 60.0, 25.0, 8.0
+"""A label farther than this from its point, in points, gets a leader line."""
+LEADER_GAP = 4.0
+"""Points between that line and the point."""
+AT_ONCE = 12
+"""Candidates tried before all the others."""
+ACROSS_LABEL = 1.0
+"""What it costs a label to be led to across another."""
+WRONG_SIDE = 0.5
+"""What it costs a label to leave the side its row keeps to; less than covering anything."""
 
 
 class Request(msgspec.Struct, frozen=True, kw_only=True):
@@ -32,7 +37,9 @@ class Request(msgspec.Struct, frozen=True, kw_only=True):
 
     ``boxes`` are the lower left corners ``(C, 2)`` of its candidate places, the best first;
     ``anchors`` the points they belong to, one for all ``(2,)`` or one each ``(C, 2)``.
-    ``optional`` ones are left out where no place is free.
+    ``optional`` ones are left out where no place is free. ``leads`` says that a line leads from
+    a far place to the anchor. Requests of one ``row``, such as the numbers of an axis, follow
+    one another and keep to one of two ``sides`` (0 or 1 for each candidate) if they can.
     """
 
     source: str
@@ -43,11 +50,14 @@ class Request(msgspec.Struct, frozen=True, kw_only=True):
     boxes: Array
     anchors: Array
     optional: bool = False
+    leads: bool = False
+    row: str = ""
+    sides: tuple[int, ...] = ()
 
     @property
     def key(self) -> Key:
         """What it is recognised by."""
-        return self.source, str(self.role), "".join(run.text for run in self.runs)
+        return self.source or self.row, str(self.role), "".join(run.text for run in self.runs)
 
 
 class Placed(msgspec.Struct, frozen=True, kw_only=True):
@@ -59,151 +69,90 @@ class Placed(msgspec.Struct, frozen=True, kw_only=True):
     choice: int
     cost: float
 
+    @property
+    def overlaps(self) -> bool:
+        """Whether it covers something."""
+        return self.cost > ACROSS_LABEL
+
 
 def place_labels(
-    requests: Sequence[Request],
-    segments: Array,
-    marks: Array,
-    page: tuple[float, float],
-    previous: Mapping[Key, int] | None = None,
+    requests: Sequence[Request], cover: Cover, previous: Mapping[Key, int] | None = None
 ) -> list[Placed]:
-    """Place labels in the order given, the most important first.
+    """Place labels on a page in the order given, the most important first.
 
-    ``segments`` ``(S, 4)`` are lines to keep off (x0, y0, x1, y1), ``marks`` ``(M, 3)`` dots (x,
-    y, radius), ``page`` the width and height to stay within. ``previous`` holds the choices of
-    the placement before: a label keeps its place while that is free.
+    ``previous`` holds the choices of the placement before: a label keeps its place while that is
+    free.
     """
     kept = previous or {}
-    taken: list[tuple[float, float, float, float]] = []
     placed: list[Placed] = []
+    row, side = "", 0
     for request in requests:
-        lows = request.boxes - CLEARANCE
-        highs = request.boxes + np.asarray(request.size) + CLEARANCE
-        cost = _cost(lows, highs, segments, marks, np.array(taken).reshape(-1, 4), page)
-        choice = kept.get(request.key, -1)
-        if not (0 <= choice < len(cost) and cost[choice] == 0.0):
-            choice = int(np.argmin(cost))
-        if request.optional and cost[choice] > 0.0:
+        if request.row and request.row != row:
+            row = request.row
+            side = _better_side([other for other in requests if other.row == row], cover)
+        choice, cost = _best(request, cover, kept.get(request.key, -1), side)
+        if request.optional and cost > 0.0:
             continue
         anchor = request.anchors if request.anchors.ndim == 1 else request.anchors[choice]
-        taken.append((*lows[choice], *highs[choice]))
-        placed.append(
-            Placed(
-                request=request,
-                corner=request.boxes[choice],
-                anchor=anchor,
-                choice=choice,
-                cost=float(cost[choice]),
-            )
+        item = Placed(
+            request=request,
+            corner=request.boxes[choice],
+            anchor=anchor,
+            choice=choice,
+            cost=cost,
         )
+        placed.append(item)
+        cover.take(item.corner, np.asarray(request.size), leader_of(item))
     return placed
 
 
-def around_point(at: Array, size: tuple[float, float], gap: float) -> Array:
-    """Candidate corners around a point: close by first, then farther out, in eight directions."""
-    width, height = size
-    corners = []
-    for distance in (gap, gap + 7.0, gap + 16.0, gap + 28.0, gap + 44.0, gap + 64.0):
-        slant = 0.75 * distance
-        corners += [
-            (slant, slant),
-            (slant, -slant - height),
-            (distance, -0.5 * height),
-            (-slant - width, slant),
-            (-slant - width, -slant - height),
-            (-distance - width, -0.5 * height),
-            (-0.5 * width, distance),
-            (-0.5 * width, -distance - height),
-        ]
-    return np.asarray(at + np.array(corners))
+def leader_of(item: Placed) -> Array | None:
+    """The line ``(2, 2)`` from the point a label names to where it stands, if that is far."""
+    if not item.request.leads:
+        return None
+    ends, far = _leaders(item.request, slice(item.choice, item.choice + 1))
+    return ends.reshape(2, 2) if far[0] else None
 
 
-def beside(at: Array, aside: Array, size: tuple[float, float], gap: float) -> Array:
-    """Candidate corners beside an axis: on one side at two distances, then on the other."""
-    half = 0.5 * np.asarray(size)
-    corners = []
-    for side, distance in ((aside, gap), (aside, gap + 5.0), (-aside, gap)):
-        # far enough along that direction for the box to clear the point
-        reach = distance + float(np.abs(side) @ half)
-        corners.append(at + side * reach - half)
-    return np.array(corners)
+def _best(request: Request, cover: Cover, kept: int, side: int) -> tuple[int, float]:
+    """The candidate to take and what it covers."""
+    wrong = np.asarray(request.sides) != side if request.row else None
+    if 0 <= kept < len(request.boxes) and not (wrong is not None and wrong[kept]):
+        cost = float(_cost(request, cover, slice(kept, kept + 1))[0])
+        if cost == 0.0:
+            return kept, cost
+    # most labels find a place among the nearest candidates
+    costs = _cost(request, cover, slice(0, AT_ONCE))
+    if np.all(costs > 0.0) and len(request.boxes) > AT_ONCE:
+        costs = np.concatenate([costs, _cost(request, cover, slice(AT_ONCE, None))])
+    ranked = costs if wrong is None else costs + WRONG_SIDE * wrong
+    choice = int(np.argmin(ranked))
+    return choice, float(costs[choice])
 
 
-def along_line(points: Array, size: tuple[float, float], gap: float) -> tuple[Array, Array]:
-    """Candidate corners, and their anchors, beside a polyline: near its end first."""
-    steps = np.hypot(*np.diff(points, axis=0).T)
-    reach = np.concatenate([[0.0], np.cumsum(steps)])
-    half = 0.5 * np.asarray(size)
-    corners, anchors = [], []
-    for share in (0.95, 0.88, 0.8, 0.7, 0.6, 0.5, 0.4, 0.3, 0.2, 0.1, 0.05):
-        goal = share * reach[-1]
-        k = min(int(np.searchsorted(reach, goal, side="right")) - 1, len(steps) - 1)
-        along = (points[k + 1] - points[k]) / max(steps[k], 1e-9)
-        at = points[k] + (goal - reach[k]) * along
-        right = np.array([along[1], -along[0]])
-        for side in (right, -right):
-            corners.append(at + side * (gap + float(np.abs(side) @ half)) - half)
-            anchors.append(at)
-    return np.array(corners), np.array(anchors)
+def _cost(request: Request, cover: Cover, part: slice) -> Array:
+    costs = cover.cost(request.boxes[part], np.asarray(request.size))
+    if request.leads:
+        ends, far = _leaders(request, part)
+        costs += ACROSS_LABEL * (far & cover.crossed(ends))
+    return costs
 
 
-def _cost(
-    lows: Array,
-    highs: Array,
-    segments: Array,
-    marks: Array,
-    taken: Array,
-    page: tuple[float, float],
-) -> Array:
-    """What each candidate box covers; 0 for a free place."""
-    cost = np.zeros(len(lows))
-    cost += _OUTSIDE * np.any((lows < 0.0) | (highs > np.asarray(page)), axis=1)
-    if len(taken):
-        apart = (
-            (taken[:, 0] >= highs[:, :1])
-            | (taken[:, 2] <= lows[:, :1])
-            | (taken[:, 1] >= highs[:, 1:])
-            | (taken[:, 3] <= lows[:, 1:])
-        )
-        cost += _ON_LABEL * np.sum(~apart, axis=1)
-    if len(marks):
-        nearest = np.clip(marks[np.newaxis, :, :2], lows[:, np.newaxis], highs[:, np.newaxis])
-        distance = np.hypot(*np.moveaxis(nearest - marks[np.newaxis, :, :2], -1, 0))
-        cost += _ON_MARKER * np.sum(distance < marks[:, 2], axis=1)
-    if len(segments):
-        near = _near(segments, lows.min(axis=0), highs.max(axis=0))
-        cost += _ON_LINE * np.sum(_hits(lows, highs, segments[near]), axis=1)
-    return cost
+def _better_side(row: Sequence[Request], cover: Cover) -> int:
+    """The side on which more requests of a row find a free place; the first if as many."""
+    sizes = np.repeat([request.size for request in row], [len(r.boxes) for r in row], axis=0)
+    costs = cover.cost(np.vstack([request.boxes for request in row]), sizes)
+    sides = np.concatenate([request.sides for request in row])
+    numbers = np.repeat(np.arange(len(row)), [len(r.boxes) for r in row])
+    first, other = (len(np.unique(numbers[(costs == 0.0) & (sides == s)])) for s in (0, 1))
+    return int(other > first)
 
 
-def _near(segments: Array, low: Array, high: Array) -> NDArray[np.bool_]:
-    x = np.sort(segments[:, 0::2], axis=1)
-    y = np.sort(segments[:, 1::2], axis=1)
-    return np.asarray(
-        (x[:, 1] >= low[0]) & (x[:, 0] <= high[0]) & (y[:, 1] >= low[1]) & (y[:, 0] <= high[1])
-    )
-
-
-def _hits(lows: Array, highs: Array, segments: Array) -> NDArray[np.bool_]:
-    """Which boxes ``(C,)`` which segments ``(S,)`` cut (Liang & Barsky 1984), ``(C, S)``."""
-    start, step = segments[:, :2], segments[:, 2:] - segments[:, :2]
-    enter = np.zeros((len(lows), len(segments)))
-    leave = np.ones_like(enter)
-    with np.errstate(divide="ignore", invalid="ignore"):
-        for axis in (0, 1):
-            one = (lows[:, axis, np.newaxis] - start[:, axis]) / step[:, axis]
-            other = (highs[:, axis, np.newaxis] - start[:, axis]) / step[:, axis]
-            flat = step[:, axis] == 0.0
-            inside = (start[:, axis] > lows[:, axis, np.newaxis]) & (
-                start[:, axis] < highs[:, axis, np.newaxis]
-            )
-            near = np.where(flat, np.where(inside, -np.inf, np.inf), np.minimum(one, other))
-            far = np.where(flat, np.where(inside, np.inf, -np.inf), np.maximum(one, other))
-            enter, leave = np.maximum(enter, near), np.minimum(leave, far)
-    return np.asarray(enter < leave)
-
-
-def segments_of(polylines: Iterable[Array]) -> Array:
-    """Join polylines ``(N, 2)`` into segments ``(S, 4)``."""
-    parts = [np.hstack([line[:-1], line[1:]]) for line in polylines if len(line) > 1]
-    return np.vstack(parts) if parts else np.empty((0, 4))
+def _leaders(request: Request, part: slice) -> tuple[Array, NDArray[np.bool_]]:
+    """Leader lines ``(C, 4)`` of some candidates, and whether these are far enough for one."""
+    boxes = request.boxes[part]
+    nearest = np.clip(request.anchors, boxes, boxes + np.asarray(request.size))
+    gap = nearest - request.anchors
+    distance = np.hypot(*gap.T)
+    starts = request.anchors + gap * (LEADER_GAP / np.maximum(distance, LEADER_GAP))[:, np.newaxis]
+    return np.hstack([starts, nearest]), distance >= LEADER_FROM

@@ -47,10 +47,8 @@ def body_fills(scene: Scene, body: BodyResult) -> Iterator[Fill]:
     """
     lines = body.ends[0].line, body.ends[1].line
     spans = _common(lines)
-    edges = [
-        _edge(scene, line, span) for line, span in zip(lines, spans, strict=True) if span[0] < span[1]
-    ]
-    if len(edges) < 2 or edges[0] is None or edges[1] is None:
+    edges = [_edge(scene, line, span) for line, span in zip(lines, spans, strict=True)]
+    if edges[0] is None or edges[1] is None:
         return
     inside = clip_polygon(np.vstack([edges[0], edges[1][::-1]]), scene.window)
     if len(inside) >= 3:
@@ -59,31 +57,37 @@ def body_fills(scene: Scene, body: BodyResult) -> Iterator[Fill]:
 
 def _common(lines: tuple[Worldline, Worldline]) -> tuple[Span, Span]:
     """The stretches of both lines that bound their sheet."""
-    first = [[line.start, line.end] for line in lines]
+    spans = [[line.start, line.end] for line in lines]
     for which in (0, 1):
         for own, other in ((0, 1), (1, 0)):
-            tau = first[own][which]
+            tau = spans[own][which]
             if not math.isfinite(tau):
                 continue
             line = lines[own]
-            side = "after" if which == 0 else "before"
-            cut = float(lines[other].tau_on_plane(line.event(tau), line.rapidity(tau, side)))
+            rapidity = line.rapidity(tau, "after" if which == 0 else "before")
+            cut = float(lines[other].tau_on_plane(line.event(tau), rapidity))
             if math.isfinite(cut):
-                first[other][which] = cut
+                spans[other][which] = cut
                 break
-    return (first[0][0], first[0][1]), (first[1][0], first[1][1])
+    return (spans[0][0], spans[0][1]), (spans[1][0], spans[1][1])
 
 
 def _edge(scene: Scene, line: Worldline, span: Span) -> Points | None:
-    """A line from the window's first to its last time, however far beside it: ``(N, 2)``."""
+    """A line from the window's first to its last time, however far beside it: ``(N, 2)``.
+
+    One point, its end, where it is no more; None where its places are beyond all numbers.
+    """
     w = scene.window
     planes = scene.chart.from_chart([[w.x0, w.x0], [w.t0, w.t1]])
-    low, high = (float(tau) for tau in line.tau_on_plane(planes, scene.view.frame.rapidity))
-    # NaN where the line has not begun, or is no more
-    first = span[0] if math.isnan(low) else max(low, span[0])
-    last = span[1] if math.isnan(high) else min(high, span[1])
-    if not (first < last and math.isfinite(last - first)):
-        return None
-    taus = line.samples(first, last, TOLERANCE / scene.scale, scene.view.frame.rapidity)
+    asked = [float(tau) for tau in line.tau_on_plane(planes, scene.view.frame.rapidity)]
+    ends: list[float] = []
+    for tau, near, far in zip(asked, span, span[::-1], strict=True):
+        # NaN where the line has not begun, or is no more
+        found = next((value for value in (tau, near, far) if math.isfinite(value)), math.nan)
+        ends.append(min(max(found, span[0]), span[1]))
+    if ends[0] < ends[1]:
+        taus = line.samples(ends[0], ends[1], TOLERANCE / scene.scale, scene.view.frame.rapidity)
+    else:
+        taus = np.array(ends[:1])
     places = scene.chart.to_chart(line.event(taus)).T
     return places if np.all(np.isfinite(places)) else None

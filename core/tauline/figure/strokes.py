@@ -130,7 +130,7 @@ class ClockNumber(msgspec.Struct, frozen=True, kw_only=True):
 
 
 def clock_numbers(scene: Scene) -> Iterator[ClockNumber]:
-    """The readings at the ticks of all moving clocks; those at rest agree with the t axis."""
+    """The readings at the ticks of all clocks but those that agree with the view's t axis."""
     units = scene.resolved.units
     for result in scene.resolved.worldlines.values():
         found = _clock_places(scene, result, CLOCK_NUMBER)
@@ -139,7 +139,8 @@ def clock_numbers(scene: Scene) -> Iterator[ClockNumber]:
         readings, places, across, step = found
         shown = units.to_reader(step, TIME)
         for reading, place, aside in zip(readings, places, across, strict=True):
-            if aside[1] != 0.0 and scene.holds(place):
+            agrees = aside[1] == 0.0 and abs(place[1] - reading) < 1e-6 * step
+            if scene.holds(place) and not agrees:
                 yield ClockNumber(
                     source=result.id,
                     hue=result.observer,

@@ -1,9 +1,10 @@
 """Ink: colour, width, dash and text size for every role, on light and on dark ground.
 
 Colours by observer are those of M. Okabe & K. Ito, *Color Universal Design* (2008,
-jfly.uni-koeln.de/color), darkened or lightened until they stand out from the ground by 3:1 (WCAG
-2.2, success criterion 1.4.11); text by 4.5:1 (1.4.3). Pale colours are blends computed towards
-the ground, never transparent.
+jfly.uni-koeln.de/color), then three of the muted ones of P. Tol, *Colour Schemes* (SRON technical
+note, issue 3.2), darkened or lightened until they stand out from the ground by 3:1 (WCAG 2.2,
+success criterion 1.4.11); text by 4.5:1 (1.4.3). Pale colours are blends computed towards the
+ground, never transparent.
 """
 
 from __future__ import annotations
@@ -23,6 +24,9 @@ OKABE_ITO: tuple[Colour, ...] = (
     (230, 159, 0),
 )
 """Blue, vermillion, bluish green, reddish purple, sky blue, orange."""
+TOL_MUTED: tuple[Colour, ...] = ((136, 34, 85), (51, 34, 136), (153, 153, 51))
+"""Wine, indigo, olive."""
+PALETTE = OKABE_ITO + TOL_MUTED
 
 GRAPHICS_CONTRAST, TEXT_CONTRAST = 3.0, 4.5
 
@@ -81,7 +85,7 @@ class Style(msgspec.Struct, frozen=True, kw_only=True):
 
     def colour(self, role: Role, hue: int = NEUTRAL) -> Colour:
         """Colour of a role in an observer's hue."""
-        full = self.ink if hue == NEUTRAL else OKABE_ITO[hue % len(OKABE_ITO)]
+        full = self.ink if hue == NEUTRAL else PALETTE[hue % len(PALETTE)]
         if role in TEXTS:
             return legible(full, self.ground, TEXT_CONTRAST)
         share = BLENDS.get(role, 0.0)
@@ -98,7 +102,7 @@ class Style(msgspec.Struct, frozen=True, kw_only=True):
 
         Hues beyond the palette are dashed too, so that no two observers look alike.
         """
-        if role is Role.WORLDLINE and hue >= len(OKABE_ITO):
+        if role is Role.WORLDLINE and hue >= len(PALETTE):
             return tuple(length * self.width_factor for length in (7.0, 2.0))
         return tuple(length * self.width_factor for length in DASHES.get(role, SOLID))
 

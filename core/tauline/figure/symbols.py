@@ -12,6 +12,11 @@ PRIME = "\N{PRIME}"
 MOST_PRIMES = 3
 
 
+def one_line(text: str) -> str:
+    """What an author wrote, without line ends and signs that cannot be printed."""
+    return " ".join("".join(sign if sign.isprintable() else " " for sign in text).split())
+
+
 def mark(resolved: Resolved, frame: FrameResult) -> tuple[Run, ...]:
     """What follows t and x in this frame: nothing, primes, or a subscript."""
     declared = list(resolved.frames)
@@ -25,7 +30,8 @@ def mark(resolved: Resolved, frame: FrameResult) -> tuple[Run, ...]:
     if frame.id:
         owner, _, leg = frame.id.partition(".leg-")
         several = sum(1 for name in resolved.leg_frames if name.startswith(f"{owner}.leg-")) > 1
-        name = resolved.worldlines[owner].label or owner if owner in resolved.worldlines else owner
+        line = resolved.worldlines.get(owner)
+        name = one_line(line.label) or owner if line is not None else owner
         return (Run(f"{name} {leg}" if several else name, "sub"),)
     return (Run("view", "sub"),)
 

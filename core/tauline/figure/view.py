@@ -73,10 +73,13 @@ def fit_window(resolved: Resolved, frame: FrameResult) -> Window:
     x, t = chart.to_chart(np.stack(points, axis=1))
     finite = np.isfinite(x) & np.isfinite(t)
     x, t = x[finite], t[finite]
-    extent = max(float(np.ptp(x)), float(np.ptp(t)))
-    if extent == 0.0:
-        extent = max(abs(float(x[0])), abs(float(t[0])), 1.0)
-    pad = MARGIN * extent
+    if x.size == 0:
+        return Window(-1.0, 1.0, -1.0, 1.0)
+    pad = MARGIN * max(float(np.ptp(x)), float(np.ptp(t)))
+    if pad <= 1e-12 * max(float(np.max(np.abs(x))), float(np.max(np.abs(t)))):
+        # a single place: show the frame's zero too, if that is not where it is
+        x, t = np.append(x, 0.0), np.append(t, 0.0)
+        pad = MARGIN * max(float(np.ptp(x)), float(np.ptp(t))) or 1.0
     window = Window(
         float(x.min()) - pad, float(x.max()) + pad, float(t.min()) - pad, float(t.max()) + pad
     )

@@ -66,8 +66,9 @@ def _meet(line: Worldline, points: Array, *, later: bool) -> LightMeeting:
     on_u, on_v = line.tau_at_u(points[0]), line.tau_at_v(points[1])
     # towards +x the reception has the emission's u and a later v; the slack lets an event on
     # the line itself be received (and sent) there at once
-    by_u = sign * (line.event(on_u)[1] - points[1]) >= -_slack(points)
-    by_v = sign * (line.event(on_v)[0] - points[0]) >= -_slack(points)
+    at_u, at_v = line.event(on_u), line.event(on_v)
+    by_u = sign * (at_u[1] - points[1]) >= -(_slack(points) + _slack(at_u))
+    by_v = sign * (at_v[0] - points[0]) >= -(_slack(points) + _slack(at_v))
     tau = np.where(by_u, on_u, np.where(by_v, on_v, np.nan))
     towards = np.where(by_u, TOWARDS_PLUS_X, np.where(by_v, TOWARDS_MINUS_X, 0))
     return LightMeeting(tau, towards)

@@ -8,9 +8,9 @@ import msgspec
 
 from tauline.charts.inertial import InertialChart
 from tauline.errors import UnknownIdError
+from tauline.readouts.pairs import interval_class
 from tauline.resolve.results import EventResult, FrameResult, Placement, Resolved
 from tauline.scenario.units import LENGTH, TIME, UnitSystem
-from tauline.spacetime import classify
 
 
 class Coordinates(msgspec.Struct, frozen=True):
@@ -112,7 +112,7 @@ def _row(
         label=event.label,
         coordinates=tuple(coordinates),
         on=event.on,
-        interval_class=str(classify(origin.point, event.point)) if origin is not None else "",
+        interval_class=str(interval_class(origin, event)) if origin is not None else "",
     )
 
 

@@ -11,7 +11,7 @@ from tauline.charts.inertial import InertialChart
 from tauline.readouts.readout import Readout, Working, format_number, readout
 from tauline.resolve.results import EventResult, FrameResult, Resolved, WorldlineResult
 from tauline.scenario.units import LENGTH, TIME, VELOCITY
-from tauline.spacetime import IntervalClass, beta, classify, doppler_factor, gamma, order
+from tauline.spacetime import IntervalClass, beta, classify, doppler_factor, gamma
 
 BOOST = "Rindler, Relativity, 2nd ed., §2.6 (section from memory)"
 INTERVAL = "Taylor & Wheeler, Spacetime Physics, 2nd ed., ch. 1 (from memory)"
@@ -43,7 +43,7 @@ def pair_readouts(
     yield readout(units, "time difference", "Δt", t2 - t1, TIME, frame=frame.label)
     yield readout(units, "distance along x", "Δx", x2 - x1, LENGTH, frame=frame.label)
     du, dv = (float(step) for step in second.point - first.point)
-    kind = classify(first.point, second.point)
+    kind = interval_class(first, second)
     yield Readout(name="interval class", symbol="", number=None, unit="", note=describe(kind))
     working = Working("s² = Δt² − Δx² = Δu Δv", INTERVAL, f"Δu = {_short(du)}, Δv = {_short(dv)}")
     if kind is IntervalClass.TIMELIKE:
@@ -57,6 +57,11 @@ def pair_readouts(
     for line in resolved.worldlines.values():
         yield from _along(resolved, line, first, second)
     yield from _between_observers(resolved, first, second, kind)
+
+
+def interval_class(first: EventResult, second: EventResult) -> IntervalClass:
+    """Class of the interval between two events, within the rounding of how they were given."""
+    return classify(first.point, second.point, np.add(first.rounding, second.rounding))
 
 
 def describe(kind: IntervalClass) -> str:
@@ -166,11 +171,11 @@ def _between_observers(
 def _doppler(first: EventResult, second: EventResult, relative: float, note: str) -> Readout:
     du, dv = np.abs(second.point - first.point)
     towards = 1.0 if du < dv else -1.0
-    earlier = order(first.point, second.point)
+    earlier = float(np.sum(second.point - first.point))
     # the receiver moving along with the ray sees the source recede
-    receding = towards * relative if earlier >= 0 else -towards * relative
-    sender = first if earlier >= 0 else second
-    receiver = second if earlier >= 0 else first
+    receding = towards * relative if earlier >= 0.0 else -towards * relative
+    sender = first if earlier >= 0.0 else second
+    receiver = second if earlier >= 0.0 else first
     return Readout(
         name=f"Doppler factor, {sender.label or sender.id} → {receiver.label or receiver.id}{note}",
         symbol="D",

@@ -22,18 +22,25 @@ from tauline.scenario.objects import (
 from tauline.scenario.units import LENGTH, TIME
 from tauline.worldlines.span import within
 
+COORDINATE_ROUNDING = 4 * np.finfo(np.float64).eps
+"""Share of |t| + |x| by which t ∓ x may be off: both were rounded, and so was their difference."""
+
 MAX_COORDINATE = 1e150
 """Beyond it the square of an interval leaves the range of numbers."""
 
 
 def event(context: Context, thing: Event) -> EventResult:
     """Work out where an event is."""
+    rounding = (0.0, 0.0)
     match thing:
         case CoordinateEvent():
             frame = context.frame(thing.frame, "frame")
             t = context.quantity(thing.t, TIME, "t")
             x = context.quantity(thing.x, LENGTH, "x")
             point = context.point(t, x, frame)
+            # the roundings of t and x outlast the difference of the two
+            stretch, size = math.exp(frame.rapidity), COORDINATE_ROUNDING * (abs(t) + abs(x))
+            rounding = (size / stretch, size * stretch)
         case ClockEvent():
             point = _by_clock(context, thing)
         case FrameTimeEvent():
@@ -48,7 +55,7 @@ def event(context: Context, thing: Event) -> EventResult:
             "it is too far away to be reckoned with",
             f"t ± x in the base frame goes up to {MAX_COORDINATE:g} {context.units.time}",
         )
-    return EventResult(id=thing.id, label=thing.label, point=point)
+    return EventResult(id=thing.id, label=thing.label, point=point, rounding=rounding)
 
 
 def _by_clock(context: Context, thing: ClockEvent) -> Point:

@@ -53,6 +53,8 @@ class EventResult(msgspec.Struct, frozen=True, kw_only=True):
     id: str
     label: str
     point: Point
+    rounding: tuple[float, float] = (0.0, 0.0)
+    """How far u and v may be off beyond their own rounding: those of a t and an x are."""
     on: tuple[Placement, ...] = ()
     owner: str = ""
 

@@ -28,8 +28,8 @@ def boost(coordinates: ArrayLike, rapidity: ArrayLike) -> Array:
     result = np.empty((rows.shape[0], *np.broadcast_shapes(rows.shape[1:], phi.shape)))
     np.multiply(rows[0], np.exp(phi), out=result[0, ...])
     np.multiply(rows[1], np.exp(-phi), out=result[1, ...])
-    for row, target in zip(rows[2:], result[2:], strict=True):
-        target[...] = row
+    for k in range(2, rows.shape[0]):
+        result[k, ...] = rows[k]
     return result
 
 
