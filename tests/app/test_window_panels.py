@@ -258,7 +258,7 @@ def test_a_dangling_id_is_told_and_mended(courier: MainWindow, qtbot: QtBot) -> 
     courier.session.select(("now-at-brakes",))
     type_in(qtbot, field(courier, "simultaneous_with"), "nothing")
     assert "nothing" in field(courier, "simultaneous_with").fault.text()
-    assert item_of(courier, "now-at-brakes").text(1) == "has a fault"
+    assert item_of(courier, "now-at-brakes").text(1) == "fault"
     type_in(qtbot, field(courier, "simultaneous_with"), "brakes")
     assert item_of(courier, "now-at-brakes").text(1) == ""
     assert not courier.session.resolved.faults
@@ -353,9 +353,9 @@ def test_a_faulty_scenario_opens_and_shows_the_rest(faulty: MainWindow) -> None:
     assert faulty.canvas.pixel_of("origin") is not None
     assert {k: item_of(faulty, k).text(1) for k in ("home", "racer", "met", "call")} == {
         "home": "",
-        "racer": "has a fault",
-        "met": "waits for another",
-        "call": "has a fault",
+        "racer": "fault",
+        "met": "waits",
+        "call": "fault",
     }
     assert faulty.docks["Problems"].windowTitle() == "Problems (3)"
 

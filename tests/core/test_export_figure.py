@@ -22,9 +22,9 @@ from tauline.export.figure import (
     POINTS_PER_MM,
     export_figure,
     figure_bytes,
-    wrapped,
 )
 from tauline.export.measure import PrintMeasure
+from tauline.export.wrap import wrapped
 from tauline.figure.drawing import Role, Run
 from tauline.figure.style import PRINT
 from tauline.figure.view import default_view

@@ -8,7 +8,6 @@ from PySide6.QtCore import (
     QAbstractTableModel,
     QItemSelection,
     QItemSelectionModel,
-    QMimeData,
     QModelIndex,
     QPersistentModelIndex,
     QSignalBlocker,
@@ -181,12 +180,13 @@ class EventsPanel(QWidget):
         self.refresh()
 
     def copy(self) -> None:
-        """Put the table on the clipboard as tab-separated text and as HTML, at full precision."""
+        """Put the table on the clipboard as tab-separated text, at full precision.
+
+        As text only: a QMimeData made here can outlive Python on the clipboard, and its end then
+        takes the process down.
+        """
         assert self.model.table is not None
-        data = QMimeData()
-        data.setText(write_table(self.model.table, "tsv"))
-        data.setHtml(write_table(self.model.table, "html"))
-        QGuiApplication.clipboard().setMimeData(data)
+        QGuiApplication.clipboard().setText(write_table(self.model.table, "tsv"))
 
     def _list_frames(self) -> None:
         resolved = self._session.resolved

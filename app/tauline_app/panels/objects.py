@@ -27,9 +27,9 @@ KINDS = {
 }
 STATES = {
     "resolved": "",
-    "not received": "never received",
-    "faulty": "has a fault",
-    "blocked": "waits for another",
+    "not received": "not received",
+    "faulty": "fault",
+    "blocked": "waits",
 }
 ID = Qt.ItemDataRole.UserRole
 DOT = 12

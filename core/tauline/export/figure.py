@@ -14,6 +14,7 @@ import numpy as np
 
 from tauline.errors import ExportError
 from tauline.export.measure import FAMILY, PrintMeasure, families
+from tauline.export.wrap import wrapped
 from tauline.figure.arrows import arrow_head
 from tauline.figure.diagram import diagram
 from tauline.figure.drawing import Drawing, Label, Points, Role, Run, Window
@@ -140,9 +141,7 @@ def drawing_bytes(
         axes.set_axis_off()
         axes.set_xlim(0.0, width)
         axes.set_ylim(0.0, height)
-        # an SVG file is set with the fonts of whoever looks at it
-        generic = ("sans-serif",) if kind == "svg" else ()
-        _Painter(axes, drawing, style, below, generic).paint()
+        _Painter(axes, drawing, style, below, kind).paint()
         buffer = io.BytesIO()
         figure.savefig(
             buffer, format=kind, dpi=PIXELS_PER_INCH, metadata=_metadata(kind, drawing, description)
@@ -150,51 +149,18 @@ def drawing_bytes(
     return buffer.getvalue()
 
 
-def wrapped(runs: tuple[Run, ...], width: float, measure: PrintMeasure) -> list[list[Run]]:
-    """Break runs into lines no wider than ``width`` (points), between words."""
-    words: list[list[Run]] = [[]]
-    for run in runs:
-        for part in _words(run.text):
-            words[-1].append(Run(part, run.style))
-            if part.endswith(" "):
-                words.append([])
-    lines: list[list[Run]] = [[]]
-    used = 0.0
-    for word in words:
-        # the space after a word may hang over
-        bare = (*word[:-1], Run(word[-1].text.rstrip(), word[-1].style)) if word else ()
-        if lines[-1] and used + measure.size(bare, Role.CAPTION)[0] > width:
-            lines.append([])
-            used = 0.0
-        lines[-1] += word
-        used += measure.size(tuple(word), Role.CAPTION)[0]
-    return [_merged(line) for line in lines if line]
-
-
-def _merged(pieces: list[Run]) -> list[Run]:
-    """Join neighbours of one style: whoever copies or searches the text meets whole phrases."""
-    runs: list[Run] = []
-    for piece in pieces:
-        if runs and runs[-1].style == piece.style:
-            runs[-1] = Run(runs[-1].text + piece.text, piece.style)
-        else:
-            runs.append(piece)
-    return runs
-
-
 class _Painter:
     """Turns the primitives of a drawing into matplotlib artists, back to front."""
 
-    def __init__(
-        self, axes: Axes, drawing: Drawing, style: Style, below: float, generic: tuple[str, ...]
-    ) -> None:
+    def __init__(self, axes: Axes, drawing: Drawing, style: Style, below: float, kind: str) -> None:
         self._axes = axes
         self._drawing = drawing
         self._style = style
         self._shift = np.array([0.0, below])
         self._measure = PrintMeasure(style)
         self._depth = 0
-        self._generic = generic
+        # an SVG file is set with the fonts of whoever looks at it
+        self._generic = ("sans-serif",) if kind == "svg" else ()
         self._groups: Counter[str] = Counter()
 
     def paint(self) -> None:
@@ -341,11 +307,6 @@ class _Painter:
                 gid=self._group(role, source),
             )
             x += self._measure.width(run, size)
-
-
-def _words(text: str) -> list[str]:
-    parts = text.split(" ")
-    return [part + " " for part in parts[:-1]] + ([parts[-1]] if parts[-1] else [])
 
 
 def _page_size(

@@ -6,9 +6,9 @@ from collections.abc import Sequence
 
 import msgspec
 
-from tauline.charts.inertial import InertialChart
 from tauline.errors import UnknownIdError
-from tauline.readouts.pairs import interval_class
+from tauline.readouts.pairs import coordinates as coordinates_in
+from tauline.readouts.pairs import interval_class, light_cone
 from tauline.resolve.results import EventResult, FrameResult, Placement, Resolved
 from tauline.scenario.units import LENGTH, TIME, UnitSystem
 
@@ -97,15 +97,10 @@ def _row(
     units = resolved.units
     coordinates = []
     for frame in frames:
-        chart = InertialChart(frame.rapidity, frame.origin)
-        u, v = (float(value) for value in chart.light_cone(event.point))
+        u, v = light_cone(event, frame)
+        t, x = coordinates_in(event, frame)
         coordinates.append(
-            Coordinates(
-                t=units.to_reader(0.5 * (u + v), TIME),
-                x=units.to_reader(0.5 * (v - u), LENGTH),
-                u=u,
-                v=v,
-            )
+            Coordinates(t=units.to_reader(t, TIME), x=units.to_reader(x, LENGTH), u=u, v=v)
         )
     return EventRow(
         id=event.id,

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import math
+import sys
 from collections.abc import Iterator
 
 import numpy as np
@@ -74,10 +75,21 @@ def describe(kind: IntervalClass) -> str:
     }[kind]
 
 
+def light_cone(event: EventResult, frame: FrameResult) -> tuple[float, float]:
+    """Coordinates u, v of an event in a frame."""
+    u, v = InertialChart(frame.rapidity, frame.origin).light_cone(event.point)
+    return float(u), float(v)
+
+
 def coordinates(event: EventResult, frame: FrameResult) -> tuple[float, float]:
-    """Coordinates t, x of an event in a frame, in internal units."""
-    x, t = InertialChart(frame.rapidity, frame.origin).to_chart(event.point[:, np.newaxis])[:, 0]
-    return float(t), float(x)
+    """Coordinates t, x of an event in a frame, in internal units.
+
+    One that is 0 within the rounding of u and v is 0.
+    """
+    u, v = light_cone(event, frame)
+    dust = 8.0 * sys.float_info.epsilon * (abs(u) + abs(v))
+    t, x = 0.5 * (u + v), 0.5 * (v - u)
+    return (t if abs(t) > dust else 0.0), (x if abs(x) > dust else 0.0)
 
 
 def name_of(resolved: Resolved, object_id: str) -> str:
