@@ -31,6 +31,7 @@ def run(path: str | None) -> int:
         return int(application.exec())
     finally:
         sys.excepthook = sys.__excepthook__
+        window.deleteLater()
 
 
 def prepare_application() -> QApplication:

@@ -80,5 +80,3 @@ def test_a_fault_of_the_program_is_told_and_the_work_goes_on(
     assert "a hole in the floor" in courier.banner.message
     assert "a hole in the floor" in capsys.readouterr().err
     assert courier.session.scenario is before
-    tell(KeyboardInterrupt, KeyboardInterrupt(), None)
-    assert "KeyboardInterrupt" in courier.banner.message
