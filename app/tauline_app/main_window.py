@@ -64,6 +64,8 @@ class MainWindow(QMainWindow):
         self.statusBar().addWidget(self._pointer)
         self.statusBar().addPermanentWidget(self._status)
         self.canvas.pointed_at.connect(self._point_at)
+        # what was under the pointer is not there any more
+        self.session.view_changed.connect(self._pointer.clear)
         QGuiApplication.styleHints().colorSchemeChanged.connect(self._system_scheme_changed)
         self.setAcceptDrops(True)
         self.session.document_changed.connect(self._follow)

@@ -16,6 +16,7 @@ from tauline.scenario.objects import Layer
 from tauline_app.actions.edits import redo, undo
 from tauline_app.canvas.canvas import ZOOM_STEP
 from tauline_app.theme import Scheme
+from tauline_app.viewing import frame_names
 
 if TYPE_CHECKING:
     from tauline_app.main_window import MainWindow
@@ -157,22 +158,16 @@ class Menus:
     def _list_frames(self) -> None:
         resolved, rail = self._session.resolved, self._window.view_bar.rail
         self.frames.clear()
-        for group in (resolved.frames, resolved.leg_frames):
-            for frame in group.values():
-                self._action(self.frames, frame.label or frame.id, partial(rail.look_from, frame))
-            self.frames.addSeparator()
+        for frame_id, name in frame_names(resolved).items():
+            self._action(self.frames, name, partial(rail.look_from, resolved.frame(frame_id)))
 
     def _list_axes(self) -> None:
         resolved, view = self._session.resolved, self._session.view
         self.axes.clear()
-        for group in (resolved.frames, resolved.leg_frames):
-            for frame in group.values():
-                action = self._action(
-                    self.axes, frame.label or frame.id, partial(self._toggle_axes, frame.id)
-                )
-                action.setCheckable(True)
-                action.setChecked(frame.id in view.axes)
-            self.axes.addSeparator()
+        for frame_id, name in frame_names(resolved).items():
+            action = self._action(self.axes, name, partial(self._toggle_axes, frame_id))
+            action.setCheckable(True)
+            action.setChecked(frame_id in view.axes)
 
     def _toggle_axes(self, frame_id: str) -> None:
         view = self._session.view

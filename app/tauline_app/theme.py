@@ -99,7 +99,7 @@ QDockWidget::title { padding: 5px 8px; background: palette(window); }
 QDockWidget > QWidget { font-weight: 400; }
 QHeaderView::section { padding: 3px 6px; border: 0; border-bottom: 1px solid palette(mid);
     background: palette(window); }
-QTableView::item { padding-left: 4px; padding-right: 5px; }
+QTableView::item { padding: 4px 5px 4px 4px; }
 QTreeView, QTableView, QScrollArea, QListView { border: 1px solid palette(mid); }
 QToolTip { border: 1px solid palette(mid); padding: 3px; }
 QLineEdit { padding: 2px 4px; }

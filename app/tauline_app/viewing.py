@@ -58,6 +58,16 @@ def frame_at(resolved: Resolved, rapidity: float) -> FrameResult:
     return free_frame(resolved, rapidity)
 
 
+def frame_names(resolved: Resolved) -> dict[str, str]:
+    """What each frame is called where all are listed, by id: declared ones, then those of legs."""
+    names = {frame.id: frame.label or frame.id for frame in resolved.frames.values()}
+    declared = set(names.values())
+    for frame in resolved.leg_frames.values():
+        name = frame.label or frame.id
+        names[frame.id] = f"{name} (rest frame)" if name in declared else name
+    return names
+
+
 def seen_from(state: ViewState, resolved: Resolved, frame: FrameResult) -> ViewState:
     """Look from another frame; the pivot event stays in its place on the canvas."""
     event = resolved.events.get(state.pivot)

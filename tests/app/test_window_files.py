@@ -21,23 +21,18 @@ Answer = QMessageBox.StandardButton
 
 
 def drop(widget: QWidget, paths: list[Path]) -> bool:
-    """Drop files as the window system would; whether they were taken."""
+    """Drop files on a widget, which may leave them to those around it; whether one took them."""
     data = QMimeData()
     data.setUrls([QUrl.fromLocalFile(str(path)) for path in paths])
     at = QPoint(20, 20)
     copy, left = Qt.DropAction.CopyAction, Qt.MouseButton.LeftButton
     plain = Qt.KeyboardModifier.NoModifier
-    # the window system asks the widget under the pointer, then those around it
-    target: QWidget | None = widget
-    while target is not None and not target.acceptDrops():
-        target = target.parentWidget()
-    assert target is not None
     enter = QDragEnterEvent(at, copy, data, left, plain)
-    QCoreApplication.sendEvent(target, enter)
+    QCoreApplication.sendEvent(widget, enter)
     if not enter.isAccepted():
         return False
     event = QDropEvent(QPointF(at), copy, data, left, plain)
-    QCoreApplication.sendEvent(target, event)
+    QCoreApplication.sendEvent(widget, event)
     return event.isAccepted()
 
 

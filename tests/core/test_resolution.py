@@ -529,3 +529,61 @@ clock = { reads = 0, at = "zero" }
     )
     rapidity = float(resolved.worldlines["ray"].line.rapidity(0.0))
     assert 2.0 / (1.0 + math.exp(2.0 * rapidity)) == pytest.approx(4.3e-24, rel=1e-13)
+
+
+# --- lines that keep with another one -------------------------------------------------------
+
+LEAD = """
+[[worldline]]
+id = "lead"
+start = "zero"
+[[worldline.leg]]
+acceleration = "1 ly/yr^2"
+for = "1 yr"
+[[worldline.leg]]
+for = "1 yr"
+"""
+
+
+def test_a_rigid_companion_follows_what_it_keeps_with() -> None:
+    scenario = scenario_of(
+        LEAD + '[[worldline]]\nid = "tail"\ncompanion = "lead"\ndistance = -0.5\n'
+    )
+    first = resolve(scenario)
+    assert first.diagnoses == ()
+    # 1 + a s = 1/2 while the lead accelerates, 1 while it coasts
+    assert first.worldlines["tail"].line.end == pytest.approx(1.5, rel=1e-14)
+    assert "tail.leg-2" in first.leg_frames
+    second = resolve(set_field(scenario, "tail", "distance", "-0.25 ly"), first)
+    assert second.worldlines["lead"] is first.worldlines["lead"]
+    assert second.worldlines["tail"].line.end == pytest.approx(1.75, rel=1e-14)
+
+
+def test_where_a_companion_breaks_is_told_and_is_no_fault() -> None:
+    resolved = resolved_of(
+        LEAD.replace("[[worldline.leg]]\nfor", '[[worldline.leg]]\nvelocity = "0"\nfor').replace(
+            '"0"', '"0 c"'
+        )
+        + '[[worldline]]\nid = "nose"\ncompanion = "lead"\ndistance = 0.5\n'
+    )
+    assert resolved.faults == ()
+    (note,) = resolved.diagnoses
+    assert "breaks where 'lead' is at t = 1.1752 yr" in note.message
+    assert "jumps" in note.message
+    assert resolved.worldlines["nose"].line.end == pytest.approx(1.5, rel=1e-14)
+
+
+def test_too_far_behind_nothing_can_keep_the_distance() -> None:
+    text = LEAD + '[[worldline]]\nid = "tail"\ncompanion = "lead"\ndistance = -1\n'
+    assert "less than 1 ly" in fault_of(text, "tail")
+
+
+def test_the_same_programme_elsewhere_begins_at_the_same_time_there() -> None:
+    resolved = clean(
+        LEAD
+        + '[[worldline]]\nid = "other"\ndisplaced = "lead"\nby = "2 ly"\nframe = "moving"\n'
+        + '[[frame]]\nid = "moving"\nvelocity = "0.6 c"\n'
+    )
+    u, v = resolved.worldlines["other"].line.event(0.0)
+    assert (0.5 * (u + v), 0.5 * (v - u)) == pytest.approx((1.5, 2.5), rel=1e-14)
+    assert resolved.worldlines["other"].line.end == 2.0

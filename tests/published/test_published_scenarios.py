@@ -333,3 +333,89 @@ clock = { reads = 0, at = "here" }
         0.6153846153846153, rel=1e-12
     )
     assert number(resolved, ("canister",), "velocity") == pytest.approx(0.909, abs=5e-4)
+
+
+def test_t3_the_rope_between_two_rockets_is_stretched() -> None:
+    """T3: same programme up to 0.6 c: the gap grows by γ − 1 = 0.25, it is not squeezed by 0.2.
+
+    B. Crowell, Special Relativity, ch. 3.9 (statement read; the number is derived).
+    """
+    resolved = resolved_from(
+        """
+[[event]]
+id = "start"
+t = 0
+x = 0
+[[worldline]]
+id = "front"
+start = "start"
+[[worldline.leg]]
+acceleration = 1
+until = { velocity = "0.6 c" }
+[[worldline.leg]]
+[[worldline]]
+id = "back"
+displaced = "front"
+by = "-1 ly"
+[[worldline]]
+id = "rope-end"
+companion = "front"
+distance = "-0.5 ly"
+[[frame]]
+id = "cruise"
+relative_to = "front.leg-2"
+[[event]]
+id = "late"
+on = "front"
+proper_time = 9
+[[event]]
+id = "back-then"
+on = "back"
+simultaneous_with = "late"
+frame = "cruise"
+[[event]]
+id = "rope-then"
+on = "rope-end"
+simultaneous_with = "late"
+frame = "cruise"
+"""
+    )
+    gap = number(resolved, ("back-then", "late"), "distance along x", "cruise")
+    assert gap - 1.0 == pytest.approx(0.25, rel=1e-12)
+    rope = number(resolved, ("rope-then", "late"), "distance along x", "cruise")
+    assert rope == pytest.approx(0.5, rel=1e-12)
+
+
+def test_e12_light_along_a_rigid_rod_is_redshifted() -> None:
+    """E12: tail at 1, nose at 2 (a L = 1): light from tail to nose has its period doubled.
+
+    Derived: the ratio of the clock rates along the rod, 1 + a L.
+    """
+    resolved = resolved_from(
+        """
+[[event]]
+id = "start"
+t = 0
+x = 1
+[[worldline]]
+id = "tail"
+start = "start"
+[[worldline.leg]]
+acceleration = 1
+for = 9
+[[worldline]]
+id = "nose"
+companion = "tail"
+distance = "1 ly"
+[[event]]
+id = "flash"
+on = "tail"
+proper_time = 2
+[[signal]]
+id = "light"
+from = "flash"
+to = "nose"
+"""
+    )
+    factor = number(resolved, ("light",), "Doppler factor, flash → light.received")
+    assert 1.0 / factor == pytest.approx(2.0, rel=1e-12)

@@ -98,9 +98,6 @@ class Canvas(pg.GraphicsView):  # type: ignore[misc]
         self.setFocusPolicy(Qt.FocusPolicy.StrongFocus)
         self.setAccessibleName("Spacetime diagram")
         self.setMinimumSize(240, 200)
-        # a file dropped here is for the window, and a graphics view would keep it
-        self.setAcceptDrops(False)
-        self.viewport().setAcceptDrops(False)
         self.setMouseTracking(True)
         self.box.sigRangeChanged.connect(self._range_changed)
         self.box.clicked.connect(self._clicked)

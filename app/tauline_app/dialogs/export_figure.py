@@ -28,6 +28,7 @@ from tauline.scenario.units import TIME
 from tauline_app.actions.files import figure_task, write_figure
 from tauline_app.dialogs.overwrite import OverwriteGuard
 from tauline_app.session import Session
+from tauline_app.viewing import frame_names
 from tauline_app.worker import Work
 
 AS_SHOWN = "as shown"
@@ -43,8 +44,8 @@ class ExportFigureDialog(QDialog):
         resolved = session.resolved
         self.frame = QComboBox()
         self.frame.addItem(f"{session.view.frame.label or 'base'} ({AS_SHOWN})", None)
-        for frame in (*resolved.frames.values(), *resolved.leg_frames.values()):
-            self.frame.addItem(frame.label or frame.id, frame.id)
+        for frame_id, name in frame_names(resolved).items():
+            self.frame.addItem(name, frame_id)
         self.first, self.last = self._number(), self._number()
         self.width_box, self.height_box = _millimetres(DEFAULT_WIDTH), _millimetres(0.0)
         self.file = QLineEdit(self._suggestion())

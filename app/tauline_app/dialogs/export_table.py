@@ -25,6 +25,7 @@ from tauline.readouts import chosen_frames, event_table
 from tauline_app.actions.files import export_table
 from tauline_app.dialogs.overwrite import OverwriteGuard
 from tauline_app.session import Session
+from tauline_app.viewing import frame_names
 
 FORMATS = {
     "csv": ("CSV (spreadsheet)", ".csv"),
@@ -46,10 +47,10 @@ class ExportTableDialog(QDialog):
         self.frames = QListWidget()
         self.frames.setAccessibleName("Frames with columns")
         resolved = session.resolved
-        for frame in (*resolved.frames.values(), *resolved.leg_frames.values()):
-            item = QListWidgetItem(frame.label or frame.id, self.frames)
-            item.setData(Qt.ItemDataRole.UserRole, frame.id)
-            declared = frame.id in resolved.frames
+        for frame_id, name in frame_names(resolved).items():
+            item = QListWidgetItem(name, self.frames)
+            item.setData(Qt.ItemDataRole.UserRole, frame_id)
+            declared = frame_id in resolved.frames
             item.setCheckState(Qt.CheckState.Checked if declared else Qt.CheckState.Unchecked)
         self.form = QComboBox()
         for name, (label, _) in FORMATS.items():

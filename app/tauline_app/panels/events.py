@@ -30,6 +30,7 @@ from tauline.export.tables import write_table
 from tauline.readouts import EventTable, event_table, format_number
 from tauline.scenario.units import LENGTH, TIME
 from tauline_app.session import Session
+from tauline_app.viewing import frame_names
 
 Index = QModelIndex | QPersistentModelIndex
 DIGITS = 6
@@ -192,14 +193,12 @@ class EventsPanel(QWidget):
         resolved = self._session.resolved
         self.menu.clear()
         shown = [frame.id for frame in self.model.table.frames] if self.model.table else []
-        for group in (resolved.frames, resolved.leg_frames):
-            for frame in group.values():
-                action = self.menu.addAction(frame.label or frame.id)
-                action.setCheckable(True)
-                action.setChecked(frame.id in shown)
-                action.setData(frame.id)
-                action.toggled.connect(self._frames_toggled)
-            self.menu.addSeparator()
+        for frame_id, name in frame_names(resolved).items():
+            action = self.menu.addAction(name)
+            action.setCheckable(True)
+            action.setChecked(frame_id in shown)
+            action.setData(frame_id)
+            action.toggled.connect(self._frames_toggled)
 
     def _frames_toggled(self) -> None:
         chosen = tuple(str(a.data()) for a in self.menu.actions() if a.isChecked())

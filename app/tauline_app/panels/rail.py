@@ -241,10 +241,14 @@ class Rail(QWidget):
         self._paint_mark(painter, ruler)
         self._paint_ruler(painter, ink, ruler)
         viewed = self._session.view.frame
-        for item in self.placed_flags():
+        placed = self.placed_flags()
+        # all staffs first: none runs through a name
+        for item in placed:
+            painter.setPen(QPen(hue_colour(self._style, item.flag.hue, Role.LINE_LABEL), 1.4))
+            painter.drawLine(QPointF(item.foot, item.box.top()), QPointF(item.foot, ruler))
+        for item in placed:
             colour = hue_colour(self._style, item.flag.hue, Role.LINE_LABEL)
             painter.setPen(QPen(colour, 1.4))
-            painter.drawLine(QPointF(item.foot, item.box.top()), QPointF(item.foot, ruler))
             current = abs(item.flag.rapidity - viewed.rapidity) < 1e-12
             painter.setBrush(colour if current else self.palette().color(QPalette.ColorRole.Base))
             painter.drawRoundedRect(item.box, 2.5, 2.5)

@@ -19,8 +19,8 @@ from PySide6.QtWidgets import (
 from tauline.readouts import Readout, readouts_for
 from tauline_app.session import Session
 
-VALUE_WIDTH, FRAME_WIDTH, WIDEST_FRAME = 128, 82, 130
-ROW_PADDING = 6
+LEAST_VALUE, LEAST_FRAME, GREATEST_FRAME = 104, 60, 130
+CELL_PADDING = 16
 HINT = "Select an event, a worldline or a signal; with Shift or Ctrl, a second one."
 
 
@@ -48,6 +48,7 @@ class ReadoutsPanel(QWidget):
         self.table.setAlternatingRowColors(True)
         self.table.setWordWrap(True)
         self.table.verticalHeader().hide()
+        self.table.verticalHeader().setSectionResizeMode(QHeaderView.ResizeMode.ResizeToContents)
         header = self.table.horizontalHeader()
         header.setHighlightSections(False)
         header.setDefaultAlignment(Qt.AlignmentFlag.AlignLeft | Qt.AlignmentFlag.AlignVCenter)
@@ -59,8 +60,6 @@ class ReadoutsPanel(QWidget):
         header.setSectionResizeMode(0, QHeaderView.ResizeMode.Stretch)
         header.setSectionResizeMode(1, QHeaderView.ResizeMode.Interactive)
         header.setSectionResizeMode(2, QHeaderView.ResizeMode.Interactive)
-        header.resizeSection(1, VALUE_WIDTH)
-        header.resizeSection(2, FRAME_WIDTH)
         head = QHBoxLayout()
         self.title = QLabel()
         self.title.setWordWrap(True)
@@ -125,8 +124,9 @@ class ReadoutsPanel(QWidget):
                         Qt.AlignmentFlag.AlignRight | Qt.AlignmentFlag.AlignVCenter
                     )
                 self.table.setItem(row, column, cell)
-        wanted = self.table.sizeHintForColumn(2) + 4
-        self.table.setColumnWidth(2, min(max(wanted, FRAME_WIDTH), WIDEST_FRAME))
-        self.table.resizeRowsToContents()
-        for row in range(self.table.rowCount()):
-            self.table.setRowHeight(row, self.table.rowHeight(row) + ROW_PADDING)
+        metrics = self.table.fontMetrics()
+        numbers = [r.text(self._digits.value()) for r in self.readouts if r.number is not None]
+        widest = max(map(metrics.horizontalAdvance, numbers), default=0) + CELL_PADDING
+        frames = self.table.sizeHintForColumn(2) + 4
+        self.table.setColumnWidth(1, max(widest, LEAST_VALUE))
+        self.table.setColumnWidth(2, min(max(frames, LEAST_FRAME), GREATEST_FRAME))

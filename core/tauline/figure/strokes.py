@@ -24,7 +24,7 @@ from tauline.resolve.results import (
 from tauline.scenario.units import TIME
 from tauline.worldlines import Worldline
 
-TOLERANCE = 0.15
+TOLERANCE = 0.03
 """Greatest distance, in points, of a drawn curve from the true one."""
 CLOCK_TICK = 26.0
 """Least distance, in points, between the ticks of a clock."""

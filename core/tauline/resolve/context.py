@@ -25,6 +25,8 @@ from tauline.scenario.objects import (
     BASE,
     Broken,
     CoastLine,
+    CompanionLine,
+    DisplacedLine,
     Frame,
     Itinerary,
     Object,
@@ -44,7 +46,7 @@ from tauline.scenario.units import (
     UnitSystem,
 )
 from tauline.spacetime import from_gamma, from_one_minus_beta
-from tauline.worldlines import Chain, Coast, ConstantAcceleration
+from tauline.worldlines import Chain, Coast, ConstantAcceleration, Leg, legs_of
 from tauline.worldlines import Worldline as WorldlineCurve
 from tauline.worldlines.protocol import Array
 
@@ -54,7 +56,7 @@ MAX_RAPIDITY = 300.0
 ROUNDING = 64 * np.finfo(np.float64).eps
 """An event is on a line if it is off by no more than this share of its coordinates."""
 
-LINES = (RestLine, CoastLine, Itinerary)
+LINES = (RestLine, CoastLine, Itinerary, CompanionLine, DisplacedLine)
 
 
 Line = Coast | ConstantAcceleration | Chain
@@ -193,6 +195,8 @@ class Context:
         outcome = self.memo.outcome(("path", line_id))
         if outcome.failure is not None:
             raise Failed(outcome.failure)
+        for remark in outcome.notes:
+            self.memo.note(remark)
         return cast(Line, outcome.value)
 
     def worldline(self, line_id: str, key: str) -> WorldlineResult:
@@ -240,9 +244,9 @@ class Context:
                 tau = line.start
             case ["end"] if math.isfinite(line.end):
                 tau = line.end
-            case [leg, "end"] if leg.startswith("leg-") and leg[4:].isdecimal():
-                ends = leg_ends(line, endless_past=_reaches_back(self.objects[owner]))
-                index = int(leg[4:]) - 1
+            case [leg_name, "end"] if leg_name.startswith("leg-") and leg_name[4:].isdecimal():
+                ends = [offset + leg.end for offset, leg in authors_legs(line)]
+                index = int(leg_name[4:]) - 1
                 if not (0 <= index < len(ends) and math.isfinite(ends[index])):
                     return None
                 tau = ends[index]
@@ -268,23 +272,18 @@ def _light_event(made: object, event_id: str, key: str) -> EventResult | None:
     return event
 
 
-def _reaches_back(thing: Object) -> bool:
-    return isinstance(thing, Itinerary) and thing.endless_past
+def authors_legs(line: Line) -> tuple[tuple[float, Leg], ...]:
+    """The legs of a line as its author counts them, with the proper times they begin at.
 
-
-def leg_ends(line: Line, *, endless_past: bool) -> tuple[float, ...]:
-    """Proper times at which the author's legs end."""
-    if not isinstance(line, Chain):
-        return (line.end,)
-    ends = tuple(offset + leg.end for offset, leg in zip(line.offsets, line.legs, strict=True))
-    return ends[1:] if endless_past else ends
+    What an itinerary travels before its start, from the endless past, is none of them.
+    """
+    legs = legs_of(line)
+    return legs[1:] if len(legs) > 1 and math.isinf(line.start) else legs
 
 
 def leg_frames(thing: Worldline, line: Line, origin: Point) -> tuple[FrameResult, ...]:
     """The rest frames of a worldline's coasting legs, ``ID.leg-1`` and so on."""
-    legs = line.legs if isinstance(line, Chain) else (line,)
-    if _reaches_back(thing):
-        legs = legs[1:]
+    legs = authors_legs(line)
     name = thing.label or thing.id
     return tuple(
         FrameResult(
@@ -294,7 +293,7 @@ def leg_frames(thing: Worldline, line: Line, origin: Point) -> tuple[FrameResult
             origin=origin,
             leg_of=thing.id,
         )
-        for number, leg in enumerate(legs, start=1)
+        for number, (_, leg) in enumerate(legs, start=1)
         if isinstance(leg, Coast)
     )
 

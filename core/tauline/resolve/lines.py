@@ -10,9 +10,17 @@ from tauline.resolve.context import Context, Line, tau_of
 from tauline.resolve.itinerary import itinerary_path
 from tauline.resolve.memo import Fault
 from tauline.resolve.results import FrameResult, Point, WorldlineResult
-from tauline.scenario.objects import CoastLine, Itinerary, LineEnd, RestLine, Worldline
+from tauline.scenario.objects import (
+    CoastLine,
+    CompanionLine,
+    DisplacedLine,
+    Itinerary,
+    LineEnd,
+    RestLine,
+    Worldline,
+)
 from tauline.scenario.units import LENGTH, TIME
-from tauline.worldlines import Coast
+from tauline.worldlines import Coast, displaced, rigid_companion
 
 
 def path(context: Context, thing: Worldline) -> Line:
@@ -20,6 +28,12 @@ def path(context: Context, thing: Worldline) -> Line:
     match thing:
         case Itinerary():
             return itinerary_path(context, thing)
+        case CompanionLine():
+            return _companion(context, thing)
+        case DisplacedLine():
+            frame = context.frame(thing.frame, "frame")
+            by = context.quantity(thing.by, LENGTH, "by")
+            return displaced(context.path(thing.displaced, "displaced"), by, frame.rapidity)
         case RestLine():
             frame = context.frame(thing.frame, "frame")
             x = context.quantity(thing.x, LENGTH, "x")
@@ -37,6 +51,28 @@ def path(context: Context, thing: Worldline) -> Line:
                 start=-math.inf,
             )
     return _cut(context, line, thing.start, thing.end)
+
+
+def _companion(context: Context, thing: CompanionLine) -> Line:
+    lead = context.path(thing.companion, "companion")
+    made = rigid_companion(lead, context.quantity(thing.distance, LENGTH, "distance"))
+    if math.isinf(made.breaks_at):
+        assert made.line is not None
+        return made.line
+    if math.isnan(made.limit):
+        why = f"the velocity of '{thing.companion}' jumps"
+    else:
+        why = f"behind this acceleration there is room for less than {context.place(made.limit)}"
+    if made.line is None:
+        raise Fault("distance", f"nothing can keep this distance: {why}")
+    t, x = context.coordinates(lead.event(made.breaks_at), context.base)
+    context.note(
+        thing.id,
+        "distance",
+        f"it breaks where '{thing.companion}' is at t = {context.time(t)}, x = {context.place(x)}"
+        f" of frame '{context.base.id}': {why}",
+    )
+    return made.line
 
 
 def worldline(context: Context, thing: Worldline, observer: int) -> WorldlineResult:

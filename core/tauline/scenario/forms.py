@@ -22,7 +22,9 @@ from tauline.scenario.objects import (
     ClockEvent,
     CoastLine,
     CoastUntil,
+    CompanionLine,
     CoordinateEvent,
+    DisplacedLine,
     Frame,
     FrameTimeEvent,
     Itinerary,
@@ -44,7 +46,13 @@ ID = re.compile(r"[a-z][a-z0-9_-]*")
 
 FORMS: dict[str, tuple[tuple[type[msgspec.Struct], tuple[str, ...]], ...]] = {
     "frame": ((Frame, ()),),
-    "worldline": ((Itinerary, ("leg",)), (CoastLine, ("through",)), (RestLine, ("x",))),
+    "worldline": (
+        (Itinerary, ("leg",)),
+        (CoastLine, ("through",)),
+        (CompanionLine, ("companion",)),
+        (DisplacedLine, ("displaced",)),
+        (RestLine, ("x",)),
+    ),
     "event": (
         (MeetingEvent, ("meeting",)),
         (SimultaneousEvent, ("simultaneous_with",)),
@@ -63,7 +71,8 @@ FORMS: dict[str, tuple[tuple[type[msgspec.Struct], tuple[str, ...]], ...]] = {
 """The forms of each kind of table, each with the keys it is known by; the first match counts."""
 
 _CHOICES = {
-    "worldline": "give x (at rest), through (coasting past an event), or [[worldline.leg]] tables",
+    "worldline": "give x (at rest), through (coasting past an event), [[worldline.leg]] tables,"
+    " companion (rigidly at a distance) or displaced (the same programme elsewhere)",
     "event": "give t and x; or on with proper_time or time; or meeting; or on with"
     " simultaneous_with",
 }

@@ -202,6 +202,30 @@ class Itinerary(NamedVelocity, frozen=True, kw_only=True, omit_defaults=True):
     legs: tuple[Leg, ...] = msgspec.field(name="leg")
 
 
+class CompanionLine(Named, frozen=True, kw_only=True, omit_defaults=True):
+    """A line at a constant proper ``distance`` along +x from the line ``companion``: Born rigid.
+
+    It ends where that breaks: at a corner, or where the distance is more than c²/|a| behind the
+    acceleration.
+    """
+
+    clock: Clock | None = None
+    companion: WorldlineId
+    distance: Length
+
+
+class DisplacedLine(Named, frozen=True, kw_only=True, omit_defaults=True):
+    """A line of the same programme as ``displaced``, moved by the length ``by`` along +x.
+
+    The length is measured in ``frame``, and the programme begins there at the same time.
+    """
+
+    clock: Clock | None = None
+    displaced: WorldlineId
+    by: Length
+    frame: FrameId | None = None
+
+
 # --- events -----------------------------------------------------------------------------------
 
 
@@ -350,7 +374,7 @@ class Broken(msgspec.Struct, frozen=True, kw_only=True):
     label: str = ""
 
 
-Worldline = RestLine | CoastLine | Itinerary
+Worldline = RestLine | CoastLine | Itinerary | CompanionLine | DisplacedLine
 Event = CoordinateEvent | ClockEvent | FrameTimeEvent | MeetingEvent | SimultaneousEvent
 Object = (
     Frame | Worldline | Event | Signal | Pulses | Simultaneity | LightCone | Body | View | Broken
@@ -362,7 +386,7 @@ def kind_of(thing: Object) -> str:
     match thing:
         case Broken():
             return thing.kind
-        case RestLine() | CoastLine() | Itinerary():
+        case RestLine() | CoastLine() | Itinerary() | CompanionLine() | DisplacedLine():
             return "worldline"
         case Signal():
             return "signal"
