@@ -74,7 +74,7 @@ def given_(**fields: st.SearchStrategy[object]) -> st.SearchStrategy[dict[str, o
     return st.fixed_dictionaries(fields)
 
 
-motion = st.one_of(
+motion: st.SearchStrategy[dict[str, object]] = st.one_of(
     st.just({}),
     given_(velocity=speeds),
     given_(rapidity=st.sampled_from([0, 0.5, -3, 30, 301, "p"])),
@@ -231,8 +231,9 @@ def all_finite(drawing: Drawing) -> bool:
     w = drawing.window
     low = np.array([w.x0, w.t0]) - 0.2 * np.array([w.width, w.height])
     high = np.array([w.x1, w.t1]) + 0.2 * np.array([w.width, w.height])
-    shapes = (*drawing.strokes, *drawing.fills)
-    places = [shape.points for shape in shapes] + [np.array([m.at]) for m in drawing.markers]
+    places = [stroke.points for stroke in drawing.strokes]
+    places += [fill.points for fill in drawing.fills]
+    places += [np.array([marker.at]) for marker in drawing.markers]
     return all(bool(np.all((p >= low) & (p <= high))) for p in places)
 
 

@@ -110,7 +110,7 @@ def test_class_in_space_is_the_same_in_every_frame(
         # what the boost rounds is as large as the coordinates on its way
         largest = max(float(np.max(np.abs(event))) for event in pair)
         rounding = 8 * np.finfo(float).eps * largest * math.exp(abs(phi))
-        assert classify(*moved, rounding) is kind
+        assert classify(moved[0], moved[1], rounding) is kind
 
 
 @given(events(2), events(2), rapidities)
