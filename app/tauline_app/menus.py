@@ -16,7 +16,7 @@ from tauline.scenario.objects import Layer
 from tauline_app.actions.edits import redo, undo
 from tauline_app.canvas.canvas import ZOOM_STEP
 from tauline_app.theme import Scheme
-from tauline_app.viewing import frame_names
+from tauline_app.viewing import frame_names, named_view
 
 if TYPE_CHECKING:
     from tauline_app.main_window import MainWindow
@@ -104,6 +104,8 @@ class Menus:
         self._action(menu, "Zoom &in", partial(window.canvas.zoom, ZOOM_STEP), ["Ctrl++", "Ctrl+="])
         self._action(menu, "Zoom ou&t", partial(window.canvas.zoom, 1 / ZOOM_STEP), ["Ctrl+-"])
         menu.addSeparator()
+        self.views = menu.addMenu("&Views of the scenario")
+        self.views.aboutToShow.connect(self._list_views)
         self.frames = menu.addMenu("&Look from")
         self.frames.aboutToShow.connect(self._list_frames)
         self.axes = menu.addMenu("&Axes of")
@@ -154,6 +156,18 @@ class Menus:
             )
         if self.recent.isEmpty():
             self.recent.addAction("none yet").setEnabled(False)
+
+    def _list_views(self) -> None:
+        session = self._session
+        self.views.clear()
+        for view in session.resolved.views.values():
+            self._action(
+                self.views,
+                view.label or view.id,
+                partial(session.set_view, named_view(session.resolved, view.id)),
+            )
+        if self.views.isEmpty():
+            self.views.addAction("none").setEnabled(False)
 
     def _list_frames(self) -> None:
         resolved, rail = self._session.resolved, self._window.view_bar.rail

@@ -10,6 +10,7 @@ from PySide6.QtCore import QObject, Signal
 
 from tauline.figure.drawing import Window
 from tauline.figure.view import fit_window
+from tauline.readouts.select import find
 from tauline.resolve import FrameResult, Resolved, resolve
 from tauline.scenario.history import History
 from tauline.scenario.read import Loaded
@@ -100,14 +101,13 @@ class Session(QObject):
         self.view_changed.emit()
 
     def _exists(self, some_id: str) -> bool:
-        resolved = self.resolved
-        return some_id in resolved.states or some_id in resolved.events
+        return some_id in self.resolved.states or find(self.resolved, some_id) is not None
 
     # --- selection ---------------------------------------------------------------------------
 
     def select(self, ids: Iterable[str]) -> None:
-        """Select these ids, in this order."""
-        chosen = tuple(dict.fromkeys(ids))
+        """Select these ids, in this order; those that name nothing are passed over."""
+        chosen = tuple(name for name in dict.fromkeys(ids) if self._exists(name))
         if chosen != self.selection:
             self.selection = chosen
             self.selection_changed.emit()

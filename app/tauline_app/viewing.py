@@ -37,9 +37,14 @@ class ViewState(msgspec.Struct, frozen=True, kw_only=True):
 
 def opening_view(resolved: Resolved) -> ViewState:
     """The view a scenario opens with: its first, or the base frame with all in sight."""
-    view = default_view(resolved)
-    first = next(iter(resolved.views.values()), None)
-    pivot = first.pivot.id if first is not None and first.pivot is not None else ""
+    return named_view(resolved, next(iter(resolved.views), None))
+
+
+def named_view(resolved: Resolved, view_id: str | None) -> ViewState:
+    """A view of the scenario; None for the base frame with all in sight."""
+    view = default_view(resolved, view_id=view_id)
+    named = resolved.views[view_id] if view_id is not None else None
+    pivot = named.pivot.id if named is not None and named.pivot is not None else ""
     return ViewState(
         frame=view.frame,
         window=view.window,

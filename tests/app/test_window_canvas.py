@@ -13,6 +13,7 @@ from PySide6.QtWidgets import QWidget
 from pytestqt.qtbot import QtBot
 
 from tauline.figure.drawing import Window
+from tauline_app.actions.edits import change_parameter
 from tauline_app.main_window import MainWindow
 from tauline_app.theme import Scheme
 
@@ -184,3 +185,16 @@ def test_resizing_keeps_all_in_sight(courier: MainWindow, qtbot: QtBot) -> None:
         qtbot.wait(1)
         for event in ("departure", "brakes", "return"):
             assert courier.canvas.viewport().rect().contains(place_of(courier, event))
+
+
+def test_ids_that_name_nothing_are_not_selected(courier: MainWindow) -> None:
+    courier.session.select(("nobody", "brakes", "brakes", "greeting.99.received"))
+    assert courier.session.selection == ("brakes",)
+
+
+def test_a_selection_outlives_an_edit_where_its_things_do(courier: MainWindow) -> None:
+    # one of the repeated signals, an event it makes, and a leg's frame
+    chosen = ("greeting.3", "greeting.3.received", "courier.leg-1")
+    courier.session.select(chosen)
+    assert change_parameter(courier.session, "speed", "0.5 c") == ""
+    assert courier.session.selection == chosen

@@ -47,7 +47,7 @@ def answer_with(monkeypatch: pytest.MonkeyPatch, answer: Answer) -> list[str]:
     return asked
 
 
-@pytest.mark.parametrize("name", ["courier", "rod-and-shed", "three-beacons"])
+@pytest.mark.parametrize("name", sorted(path.stem for path in scenarios_folder().glob("*.toml")))
 def test_the_shipped_scenarios_open_without_a_fault(window: MainWindow, name: str) -> None:
     assert window.open_path(scenarios_folder() / f"{name}.toml")
     assert not window.session.resolved.faults
@@ -58,9 +58,10 @@ def test_the_shipped_scenarios_open_without_a_fault(window: MainWindow, name: st
 
 
 def test_the_examples_menu_opens_them(window: MainWindow) -> None:
-    actions = window.menus.examples.actions()
-    assert [action.text() for action in actions] == ["Courier", "Rod and shed", "Three beacons"]
-    actions[2].trigger()
+    actions = {action.text(): action for action in window.menus.examples.actions()}
+    assert len(actions) == len(list(scenarios_folder().glob("*.toml")))
+    assert {"Courier", "Rod and shed", "Three beacons"} <= set(actions)
+    actions["Three beacons"].trigger()
     assert window.session.scenario.title == "Three beacons"
 
 
@@ -273,3 +274,21 @@ def test_opening_a_menu_again_and_again_piles_nothing_up(courier: MainWindow) ->
     for _ in range(5):
         courier.menus.frames.aboutToShow.emit()
     assert len(courier.findChildren(type(courier.menus.undo))) == once
+
+
+def test_the_views_of_the_scenario_are_in_a_menu(window: MainWindow, tmp_path: Path) -> None:
+    path = tmp_path / "views.toml"
+    path.write_text(
+        'tauline = 1\n[[frame]]\nid = "fast"\nvelocity = "0.5 c"\n'
+        '[[view]]\nid = "first"\nlabel = "First"\n'
+        '[[view]]\nid = "second"\nlabel = "Second"\nframe = "fast"\nt = [2, 5]\n'
+    )
+    assert window.open_path(path)
+    opened = window.session.view
+    window.menus.views.aboutToShow.emit()
+    first, second = window.menus.views.actions()
+    second.trigger()
+    assert window.session.view.frame.id == "fast"
+    assert (window.session.view.window.t0, window.session.view.window.t1) == (2.0, 5.0)
+    first.trigger()
+    assert window.session.view == opened

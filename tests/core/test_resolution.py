@@ -587,3 +587,47 @@ def test_the_same_programme_elsewhere_begins_at_the_same_time_there() -> None:
     u, v = resolved.worldlines["other"].line.event(0.0)
     assert (0.5 * (u + v), 0.5 * (v - u)) == pytest.approx((1.5, 2.5), rel=1e-14)
     assert resolved.worldlines["other"].line.end == 2.0
+
+
+@pytest.mark.parametrize(
+    "until",
+    [
+        "x = 1",
+        "time = 1.7320508075688772",
+        'proper_time = "acosh(2) yr"',
+        'meets = "mark"',
+        'velocity = "sqrt(3)/2 c"',
+    ],
+)
+def test_an_accelerated_leg_ends_in_any_way(until: str) -> None:
+    """One light-year at 1 ly/yr²: γ = 2, t = √3, τ = arcosh 2 (hyperbolic motion)."""
+    resolved = clean(
+        f"""
+[[event]]
+id = "there"
+t = 0
+x = 1
+[[worldline]]
+id = "mark"
+x = 1
+clock = {{ reads = 0, at = "there" }}
+[[worldline]]
+id = "ship"
+start = "zero"
+[[worldline.leg]]
+acceleration = 1
+until = {{ {until} }}
+[[worldline.leg]]
+acceleration = -1
+until = {{ velocity = "0 c" }}
+"""
+    )
+    line = resolved.worldlines["ship"].line
+    assert line.end == pytest.approx(2 * math.acosh(2), rel=1e-14)
+    u, v = line.event(line.end)
+    assert (0.5 * (u + v), 0.5 * (v - u)) == pytest.approx((2 * math.sqrt(3), 2.0), rel=1e-13)
+
+
+def test_a_leg_pushed_the_wrong_way_says_so() -> None:
+    text = LEG.format(velocity="0 c", leg="acceleration = -1\nuntil = { x = 1 }")
+    assert "never gets to x = 1 ly" in fault_of(text, "ship")

@@ -419,3 +419,35 @@ to = "nose"
     )
     factor = number(resolved, ("light",), "Doppler factor, flash → light.received")
     assert 1.0 / factor == pytest.approx(2.0, rel=1e-12)
+
+
+@pytest.mark.parametrize(
+    ("far", "flyby", "years", "exact"),
+    [(27000, True, 11, 10.593187084191711), (30000, False, 20, 20.046861483208057)],
+)
+def test_e3_to_the_middle_of_the_galaxy(
+    far: float, flyby: bool, years: float, exact: float
+) -> None:
+    """E3: 9.8 m/s² all the way: 27 000 ly in 11 yr; 30 000 ly with braking in 20 yr.
+
+    B. Crowell, Special Relativity, ch. 4, problem "galactic-center" (numbers read).
+    """
+    braking = '[[worldline.leg]]\nacceleration = "-9.8 m/s^2"\nuntil = { velocity = "0 c" }\n'
+    resolved = resolved_from(
+        f"""
+[[event]]
+id = "leaving"
+t = 0
+x = 0
+[[worldline]]
+id = "ship"
+start = "leaving"
+[[worldline.leg]]
+acceleration = "9.8 m/s^2"
+until = {{ x = {far if flyby else far / 2} }}
+{"" if flyby else braking}
+"""
+    )
+    age = number(resolved, ("ship",), "elapsed proper time")
+    assert age == pytest.approx(years, abs=0.5)
+    assert age == pytest.approx(exact, rel=1e-12)

@@ -8,10 +8,10 @@ import msgspec
 import numpy as np
 
 from tauline.meetings import meetings
-from tauline.resolve.context import MAX_RAPIDITY, Context
+from tauline.resolve.context import MAX_RAPIDITY, Context, Line
 from tauline.resolve.memo import Fault
 from tauline.resolve.results import FrameResult, Point
-from tauline.scenario.objects import AcceleratedLeg, CoastLeg, Itinerary, SpeedUntil
+from tauline.scenario.objects import AcceleratedLeg, CoastLeg, Itinerary, PushUntil
 from tauline.scenario.units import ACCELERATION, LENGTH, TIME
 from tauline.worldlines import Chain, Coast, ConstantAcceleration, Leg, chain
 
@@ -140,13 +140,18 @@ def _coast_duration(
     return f"{key}.meets", _until_meeting(context, until.meets, endless, f"{key}.meets")
 
 
-def _until_meeting(context: Context, other: str, endless: Coast, key: str) -> float:
-    line = context.path(other, key)
+def _until_meeting(context: Context, other: str, endless: Leg, key: str) -> float:
+    found = _first_meeting(endless, context.path(other, key))
+    if math.isnan(found):
+        raise Fault(key, f"this leg never meets '{other}' after it has begun")
+    return found
+
+
+def _first_meeting(endless: Leg, line: Line) -> float:
+    """Proper time of the first meeting after the leg has begun; NaN for none."""
     size = float(np.max(np.abs(endless.point)))
-    for meeting in meetings(endless, line):
-        if meeting.first > 1e-12 * (size + meeting.first):
-            return meeting.first
-    raise Fault(key, f"this leg never meets '{other}' after it has begun")
+    later = (m.first for m in meetings(endless, line) if m.first > 1e-12 * (size + m.first))
+    return next(later, math.nan)
 
 
 def _until_reading(context: Context, reading: float | str, now: _Traveller, key: str) -> float:
@@ -176,20 +181,20 @@ def _accelerate(
         duration = context.quantity(leg.duration, TIME, place)
     elif leg.until is None:
         return endless
-    elif leg.until.proper_time is not None:
-        place = f"{key}.until.proper_time"
-        duration = _until_reading(context, leg.until.proper_time, now, place)
     else:
-        place = f"{key}.until"
-        target = _target(context, leg.until, default, place)
-        duration = (target - now.rapidity) / acceleration
-        if duration <= 0.0:
-            raise Fault(
-                place,
-                "this acceleration leads away from that velocity",
-                "change the sign of the acceleration",
-            )
-    if duration <= 0.0:
+        frame = context.frame(leg.until.frame, f"{key}.until.frame") if leg.until.frame else default
+        target = context.rapidity(leg.until, f"{key}.until.", frame)
+        if target is None:
+            place, duration = _push_duration(context, leg.until, now, endless, frame, key)
+        else:
+            place, duration = f"{key}.until", (target - now.rapidity) / acceleration
+            if duration <= 0.0:
+                raise Fault(
+                    place,
+                    "this acceleration leads away from that velocity",
+                    "change the sign of the acceleration",
+                )
+    if math.isnan(duration) or duration <= 0.0:
         raise Fault(place, *_no_length(context, now, default))
     reached = now.rapidity + acceleration * duration if target is None else target
     if abs(reached) > MAX_RAPIDITY:
@@ -200,12 +205,39 @@ def _accelerate(
     return made
 
 
-def _target(context: Context, until: SpeedUntil, default: FrameResult, key: str) -> float:
-    frame = context.frame(until.frame, f"{key}.frame") if until.frame else default
-    target = context.rapidity(until, f"{key}.", frame)
-    if target is None:
-        raise Fault(key, "it does not say where the leg ends", "give a velocity or a proper_time")
-    return target
+def _push_duration(
+    context: Context,
+    until: PushUntil,
+    now: _Traveller,
+    endless: ConstantAcceleration,
+    frame: FrameResult,
+    key: str,
+) -> tuple[str, float]:
+    """Own proper time until an accelerated leg's end, and the key that says where that is."""
+    key = f"{key}.until"
+    if until.time is not None:
+        time = context.quantity(until.time, TIME, f"{key}.time")
+        tau = float(endless.tau_on_plane(context.point(time, 0.0, frame), frame.rapidity))
+        return f"{key}.time", tau
+    if until.x is not None:
+        goal = context.quantity(until.x, LENGTH, f"{key}.x")
+        resting = Coast(
+            point=context.point(0.0, goal, frame), start_rapidity=frame.rapidity, start=-math.inf
+        )
+        tau = _first_meeting(endless, resting)
+        if math.isnan(tau):
+            here = context.place(context.coordinates(now.point, frame)[1])
+            raise Fault(
+                f"{key}.x",
+                f"this leg never gets to x = {context.place(goal)}: it starts at x = {here}",
+                f"in the frame '{frame.id}'",
+            )
+        return f"{key}.x", tau
+    if until.proper_time is not None:
+        place = f"{key}.proper_time"
+        return place, _until_reading(context, until.proper_time, now, place)
+    assert until.meets is not None
+    return f"{key}.meets", _until_meeting(context, until.meets, endless, f"{key}.meets")
 
 
 def _rapidity_to(goal: Point, here: Point, event_id: str, key: str) -> float:

@@ -32,11 +32,11 @@ from tauline.scenario.objects import (
     MeetingEvent,
     Object,
     Pulses,
+    PushUntil,
     RestLine,
     Signal,
     Simultaneity,
     SimultaneousEvent,
-    SpeedUntil,
     View,
 )
 from tauline.scenario.paths import item, join
@@ -278,9 +278,9 @@ class _Check:
         if form is CoastUntil:
             self._one_of(table, path, ("time", "x", "proper_time", "event", "meets"))
             self._frame_with(table, path, ("time", "x"))
-        elif form is SpeedUntil:
-            self._one_of(table, path, (*SPEEDS, "proper_time"))
-            self._frame_with(table, path, SPEEDS)
+        elif form is PushUntil:
+            self._one_of(table, path, (*SPEEDS, "time", "x", "proper_time", "meets"))
+            self._frame_with(table, path, (*SPEEDS, "time", "x"))
         elif form is Signal:
             self._one_of(table, path, ("to", "direction"))
         elif form is Itinerary and table["leg"] == []:

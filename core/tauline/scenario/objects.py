@@ -165,23 +165,30 @@ class CoastLeg(Velocity, frozen=True, kw_only=True, omit_defaults=True):
     until: CoastUntil | None = None
 
 
-class SpeedUntil(Velocity, frozen=True, kw_only=True, omit_defaults=True):
-    """An accelerated leg ends at this velocity in ``frame``, or at a reading of its clock."""
+class PushUntil(Velocity, frozen=True, kw_only=True, omit_defaults=True):
+    """Where an accelerated leg ends; exactly one of a velocity, time, x, proper_time and meets.
 
+    The velocity, ``time`` and ``x`` are those in ``frame``; ``proper_time`` is a reading of the
+    traveller's own clock; ``meets`` another worldline.
+    """
+
+    time: Time | None = None
+    x: Length | None = None
     frame: FrameId | None = None
     proper_time: Time | None = None
+    meets: WorldlineId | None = None
 
 
 class AcceleratedLeg(msgspec.Struct, frozen=True, kw_only=True, omit_defaults=True):
     """A stretch of constant proper acceleration along x.
 
-    ``for`` is the leg's own proper time; ``until`` a velocity or a clock reading. Without
-    either it is endless, which only the last leg may be.
+    ``for`` is the leg's own proper time. Without ``for`` and ``until`` the leg is endless, which
+    only the last one may be.
     """
 
     acceleration: Acceleration
     duration: Time | None = msgspec.field(default=None, name="for")
-    until: SpeedUntil | None = None
+    until: PushUntil | None = None
 
 
 Leg = CoastLeg | AcceleratedLeg
