@@ -163,6 +163,26 @@ def test_an_observer_and_an_event_elsewhere() -> None:
     assert found["clock of home when it sees it"].number == pytest.approx(8.0, rel=1e-15)
 
 
+def test_what_a_corner_skips_is_reckoned_by_nobody() -> None:
+    resolved = resolve(
+        parse(STORY + '[[event]]\nid = "mid"\non = "home"\nproper_time = 5\n').scenario
+    )
+    found = say("turner", "mid", of=resolved)
+    assert found["reckoned time, turner, co-moving"].number is None
+    assert "none" in found["reckoned time, turner, co-moving"].text()
+    # sent at 1/2 · 5, back at 10 − 1/2 · 5 of the traveller's eight years
+    assert found["radar time of turner"].number == pytest.approx(4.0)
+    assert found["radar place of turner"].number == pytest.approx(-1.5)
+
+
+def test_seen_is_neither_reckoned_nor_happened() -> None:
+    found = say("home", "apart")
+    assert found["clock of home when it sees it"].number == pytest.approx(8.0)
+    assert found["place where home sees it"].number == pytest.approx(5.0)
+    assert found["reckoned time, home, co-moving"].number == pytest.approx(3.0)
+    assert found["reckoned place, home, co-moving"].number == pytest.approx(5.0)
+
+
 def test_very_fast_things_are_told_by_what_is_missing_to_c() -> None:
     resolved = resolve(
         parse(

@@ -274,6 +274,9 @@ def test_d12_radar() -> None:
     assert echo == pytest.approx(4.0, rel=1e-12)
     hit = table["ping.received"].coordinates[0]
     assert (hit.t, hit.x) == pytest.approx((2.5, 1.5), rel=1e-12)
+    seen = ("station", "ping.received")
+    assert number(resolved, seen, "radar time of station") == pytest.approx(2.5, rel=1e-12)
+    assert number(resolved, seen, "radar place of station") == pytest.approx(1.5, rel=1e-12)
 
 
 def test_g3_interval_of_48() -> None:
@@ -451,3 +454,53 @@ until = {{ x = {far if flyby else far / 2} }}
     age = number(resolved, ("ship",), "elapsed proper time")
     assert age == pytest.approx(years, abs=0.5)
     assert age == pytest.approx(exact, rel=1e-12)
+
+
+def test_e7_the_horizon_of_a_ship_at_one_g() -> None:
+    """E7: 0.97 ly behind a 1 g ship; signals from where it started arrive if sent within 354 d.
+
+    "About one light-year" read in arcsecond.blogspot.com 2008/07 and elsewhere; 0.97 from memory;
+    the number of days is derived, c/g.
+    """
+    resolved = resolved_from(
+        """
+[units]
+time = "d"
+length = "ly"
+[[event]]
+id = "start"
+t = 0
+x = 0
+[[worldline]]
+id = "base-camp"
+x = 0
+clock = { reads = 0, at = "start" }
+[[worldline]]
+id = "ship"
+start = "start"
+[[worldline.leg]]
+acceleration = "1 g"
+[[event]]
+id = "in-time"
+t = 353.8
+x = 0
+[[event]]
+id = "late"
+t = 353.9
+x = 0
+[[signal]]
+id = "first"
+from = "in-time"
+to = "ship"
+[[signal]]
+id = "second"
+from = "late"
+to = "ship"
+"""
+    )
+    assert number(resolved, ("ship",), "horizon, from the traveller") == pytest.approx(
+        -0.9687150795722887, rel=1e-12
+    )
+    assert resolved.states["first"] == "resolved"
+    assert resolved.states["second"] == "not received"
+    assert "leaves before t = 353.823 d" in resolved.signals["second"].reason

@@ -8,12 +8,17 @@ from tauline.meetings.light import (
     why_no_emission,
     why_no_reception,
 )
+from tauline.meetings.reckoning import Reckoning, comoving, horizon, radar
 
 __all__ = [
     "LightMeeting",
     "Meeting",
+    "Reckoning",
+    "comoving",
     "emissions",
+    "horizon",
     "meetings",
+    "radar",
     "receptions",
     "why_no_emission",
     "why_no_reception",

@@ -8,14 +8,19 @@ from typing import cast
 
 import numpy as np
 
-from tauline.meetings import meetings, receptions
+from tauline.meetings import comoving, horizon, meetings, radar, receptions
 from tauline.readouts.pairs import COMPOSITION, DOPPLER, coordinates, rapidities_at
 from tauline.readouts.readout import Readout, Working, format_number, readout
 from tauline.resolve.context import Line
 from tauline.resolve.results import EventResult, FrameResult, Resolved, WorldlineResult
-from tauline.scenario.units import ACCELERATION, NUMBER, TIME, VELOCITY, UnitSystem
+from tauline.scenario.units import ACCELERATION, LENGTH, NUMBER, TIME, VELOCITY, UnitSystem
 from tauline.spacetime import beta, gamma, one_minus_beta
 from tauline.worldlines import legs_of
+
+SEEN = "Rindler, Relativity, 2nd ed., §4.4 (section from memory)"
+COMOVING = "Misner, Thorne & Wheeler, Gravitation (1973), §6.6 (section from memory)"
+RADAR = "Bondi, Relativity and Common Sense (1964), ch. IX (from memory)"
+HORIZON = "Rindler, Relativity, 2nd ed., §3.8 (section from memory)"
 
 
 def worldline_readouts(
@@ -47,6 +52,17 @@ def worldline_readouts(
         if math.isfinite(leg.end):
             change = acceleration * leg.end
             yield readout(units, f"change of rapidity{where}", "Δφ", change, NUMBER)
+    yield from _horizon(units, line)
+
+
+def _horizon(units: UnitSystem, line: Line) -> Iterator[Readout]:
+    """How far behind an endless acceleration light can still catch up."""
+    if all(math.isinf(limit) for limit in horizon(line)):
+        return
+    _, leg = legs_of(line)[-1]
+    distance = -1.0 / leg.proper_acceleration
+    working = Working("ξ = −c²/a", HORIZON, f"a = {format_number(leg.proper_acceleration, 6)}")
+    yield readout(units, "horizon, from the traveller", "ξ", distance, LENGTH, working=working)
 
 
 def velocity_readouts(
@@ -84,8 +100,51 @@ def observer_and_event(
         return
     same_time = float(result.line.tau_on_plane(event.point, frame.rapidity))
     yield _clock(units, f"clock of {name}, simultaneous", result, same_time, frame.label)
-    seen = float(receptions(result.line, event.point).tau)
-    yield _clock(units, f"clock of {name} when it sees it", result, seen, "", "never seen")
+    yield from _seen(units, name, result, event)
+    yield from _reckoned(units, name, result, event)
+
+
+def _seen(
+    units: UnitSystem, name: str, result: WorldlineResult, event: EventResult
+) -> Iterator[Readout]:
+    """When light of the event arrives, and how far off it then seems to have happened."""
+    found = receptions(result.line, event.point)
+    tau = float(found.tau)
+    yield _clock(units, f"clock of {name} when it sees it", result, tau, "", "never seen")
+    if math.isnan(tau):
+        return
+    phi = float(result.line.rapidity(tau))
+    du, dv = (float(step) for step in result.line.event(tau) - event.point)
+    # light comes from the side it goes away from
+    distance = 0.5 * (du * math.exp(phi) - dv * math.exp(-phi))
+    working = Working("x′ of the event in the rest frame at reception", SEEN)
+    yield readout(units, f"place where {name} sees it", "x", distance, LENGTH, working=working)
+
+
+def _reckoned(
+    units: UnitSystem, name: str, result: WorldlineResult, event: EventResult
+) -> Iterator[Readout]:
+    """When and where the observer reckons the event, by each convention and every branch."""
+    branches = comoving(cast(Line, result.line), event.point)
+    working = Working("the event lies on the observer's momentary simultaneity line", COMOVING)
+    for number, branch in enumerate(branches, start=1):
+        which = f", {number} of {len(branches)}" if len(branches) > 1 else ""
+        how = f"{name}, co-moving{which}"
+        reading = result.reading(branch.tau)
+        yield readout(units, f"reckoned time, {how}", "τ", reading, TIME, working=working)
+        yield readout(units, f"reckoned place, {how}", "ξ", branch.distance, LENGTH)
+    if not branches:
+        note = "none: no momentary simultaneity line passes there"
+        yield readout(units, f"reckoned time, {name}, co-moving", "τ", math.nan, TIME, note=note)
+    echo = radar(cast(Line, result.line), event.point)
+    if echo is None:
+        note = "none: no light goes there and comes back"
+        yield readout(units, f"radar time of {name}", "τ", math.nan, TIME, note=note)
+        return
+    working = Working("(τ₁ + τ₂)/2, (τ₂ − τ₁)/2", RADAR)
+    reading = result.reading(echo.tau)
+    yield readout(units, f"radar time of {name}", "τ", reading, TIME, working=working)
+    yield readout(units, f"radar place of {name}", "x", echo.distance, LENGTH, working=working)
 
 
 def _clock(

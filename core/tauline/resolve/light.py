@@ -7,7 +7,13 @@ import math
 import msgspec
 import numpy as np
 
-from tauline.meetings import emissions, receptions, why_no_emission, why_no_reception
+from tauline.meetings import (
+    emissions,
+    horizon,
+    receptions,
+    why_no_emission,
+    why_no_reception,
+)
 from tauline.resolve.context import ROUNDING, Context, Line, tau_of
 from tauline.resolve.memo import Fault
 from tauline.resolve.results import EventResult, Point, PulsesResult, SignalResult
@@ -43,7 +49,7 @@ def signal(context: Context, thing: Signal) -> SignalResult:
     line = context.path(thing.to, "to")
     tau, towards_array = receptions(line, source.point)
     if np.isnan(tau):
-        reason = why_no_reception(line, source.point)
+        reason = why_no_reception(line, source.point) + _cut_off(context, line, source.point)
         context.note(thing.id, "to", f"never received: {reason}")
         side = 1 if _lies_ahead(line, source) else -1
         return _result(thing, source, None, side, reason)
@@ -88,7 +94,10 @@ def pulses(context: Context, thing: Pulses) -> PulsesResult:
             place = sent.point
             end = f"{name}.received"
             received = _made(end, receiver, float(found[k]), thing.id, place, side)
-        reason = why_no_reception(receiver, points[:, k]) if lost else ""
+        reason = ""
+        if lost:
+            reason = why_no_reception(receiver, sent.point)
+            reason += _cut_off(context, receiver, sent.point)
         signals.append(
             SignalResult(
                 id=name,
@@ -160,6 +169,19 @@ def _result(
         reason=reason,
         source_line=thing.source if sent is not None and sent.owner == thing.id else "",
         target_line=thing.to or "" if received is not None and received.owner == thing.id else "",
+    )
+
+
+def _cut_off(context: Context, line: Line, point: Point) -> str:
+    """Until when light from the same place would have been received, where a horizon forbids it."""
+    u_limit, v_limit = horizon(line)
+    t, x = context.coordinates(point, context.base)
+    latest = min(u_limit + x, v_limit - x)
+    if not (math.isfinite(latest) and t >= latest):
+        return ""
+    return (
+        f"; from x = {context.place(x)} the last that arrives leaves before"
+        f" t = {context.time(latest)} of frame '{context.base.id}'"
     )
 
 

@@ -101,11 +101,12 @@ def _clock_offset(context: Context, thing: Worldline, line: Line) -> float:
     if clock.at == "start":
         if isinstance(thing, Itinerary):
             return reads
-        if math.isinf(line.start):
+        if math.isfinite(line.start):
+            return reads - line.start
+        if "start" not in context.objects:
             raise Fault(
                 "clock.at", "this worldline has no start", 'name an event on it: at = "EVENT"'
             )
-        return reads - line.start
     event = context.event(clock.at, "clock.at")
     tau = tau_of(line, event.point)
     if math.isnan(tau):

@@ -107,7 +107,10 @@ LineEnd = EventId | FrameTime
 
 
 class Clock(msgspec.Struct, frozen=True, kw_only=True, omit_defaults=True):
-    """The clock carried along a worldline shows ``reads`` at ``at``: an event, or ``start``."""
+    """The clock carried along a worldline shows ``reads`` at ``at``: an event, or ``start``.
+
+    ``start`` is where the worldline starts; on one without a start, an event of that id.
+    """
 
     reads: Time
     at: EventOrStart = "start"
