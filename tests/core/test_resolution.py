@@ -631,3 +631,33 @@ until = {{ velocity = "0 c" }}
 def test_a_leg_pushed_the_wrong_way_says_so() -> None:
     text = LEG.format(velocity="0 c", leg="acceleration = -1\nuntil = { x = 1 }")
     assert "never gets to x = 1 ly" in fault_of(text, "ship")
+
+
+def test_all_faults_of_a_table_are_told_at_once() -> None:
+    """A key too many does not hide the wrong units beside it."""
+    resolved = resolved_of(
+        """
+[[worldline]]
+id = "ship"
+start = "zero"
+velocity = "0.5 yr"
+colour = "red"
+[[worldline.leg]]
+for = "2 ly"
+until = { time = 3 }
+[[event]]
+id = "e"
+t = "5 kg"
+x = 1
+y = 2
+"""
+    )
+    told = {(fault.object, fault.key) for fault in resolved.faults}
+    assert told == {
+        ("ship", "colour"),
+        ("ship", "velocity"),
+        ("ship", "leg[1].for"),
+        ("ship", "leg[1].until"),
+        ("e", "t"),
+        ("e", "y"),
+    }

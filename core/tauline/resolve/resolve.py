@@ -8,6 +8,7 @@ from itertools import chain
 from typing import Any, TypeVar, cast
 
 from tauline.resolve import events, light, lines, surfaces
+from tauline.resolve.broken import value_faults
 from tauline.resolve.context import LINES, Context, Line, base_frame, is_base, leg_frames
 from tauline.resolve.memo import Fault, Memo, Node, Outcome, StaleMemo
 from tauline.resolve.placements import place_on_worldlines
@@ -178,7 +179,7 @@ def _assemble(
         bodies=_of(BodyResult, made),
         views=_of(ViewResult, made),
         states={thing.id: _state(outcomes.get(thing.id)) for thing in scenario.objects},
-        diagnoses=(*faults, *_diagnoses(scenario, outcomes)),
+        diagnoses=(*faults, *_diagnoses(scenario, context.units, parameters, outcomes)),
         memo=context.memo.outcomes,
     )
 
@@ -198,11 +199,17 @@ def _state(outcome: Outcome | None) -> State:
     return "resolved"
 
 
-def _diagnoses(scenario: Scenario, outcomes: dict[str, Outcome]) -> Iterator[Diagnosis]:
+def _diagnoses(
+    scenario: Scenario,
+    units: UnitSystem,
+    parameters: Mapping[str, Quantity],
+    outcomes: dict[str, Outcome],
+) -> Iterator[Diagnosis]:
     """All remarks, in the order of the file."""
     for thing in scenario.objects:
         if isinstance(thing, Broken):
             yield from thing.faults
+            yield from value_faults(thing, units, parameters)
             continue
         outcome = outcomes[thing.id]
         yield from outcome.notes

@@ -14,6 +14,9 @@ from tauline.resolve.results import (
 from tauline.scenario.objects import Body, LightCone, Simultaneity, Value, View
 from tauline.scenario.units import LENGTH, TIME, Dimension
 
+WIDEST = 1e100
+"""Farthest edge of a window: squares of places on its page must stay numbers."""
+
 
 def simultaneity(context: Context, thing: Simultaneity) -> SimultaneityResult:
     """Work out the slope of a simultaneity line."""
@@ -72,6 +75,8 @@ def _range(
         context.quantity(value, dimension, f"{key}[{number}]")
         for number, value in enumerate(given, start=1)
     )
+    if max(abs(low), abs(high)) > WIDEST:
+        raise Fault(key, "this window reaches farther than can be drawn", "choose a smaller one")
     if not low < high:
         raise Fault(key, "a window must end after it begins", "put the smaller value first")
     return low, high
