@@ -252,9 +252,14 @@ class MainWindow(QMainWindow):
         self.setWindowModified(session.is_modified)
         resolved = session.resolved
         count = len(resolved.faults)
-        faults = "no faults" if not count else f"{count} fault{'s' if count > 1 else ''}"
+        faults = _counted(count, "fault") if count else "no faults"
         self._status.setText(
-            f"{len(resolved.events)} events, {len(resolved.worldlines)} worldlines, {faults}"
+            f"{_counted(len(resolved.events), 'event')},"
+            f" {_counted(len(resolved.worldlines), 'worldline')}, {faults}"
         )
         label = f"Problems ({count})" if count else "Problems"
         self.docks["Problems"].setWindowTitle(label)
+
+
+def _counted(number: int, noun: str) -> str:
+    return f"{number} {noun}" if number == 1 else f"{number} {noun}s"

@@ -661,3 +661,23 @@ y = 2
         ("e", "t"),
         ("e", "y"),
     }
+
+
+@given(st.floats(-0.95, 0.95), st.floats(-0.95, 0.95))
+def test_from_the_halfway_frame_both_go_at_one_speed(first: float, second: float) -> None:
+    resolved = clean(
+        f"""
+[[frame]]
+id = "one"
+velocity = "{first!r} c"
+[[frame]]
+id = "other"
+velocity = "{second!r} c"
+[[frame]]
+id = "between"
+halfway = ["one", "other"]
+"""
+    )
+    middle = resolved.frame("between").rapidity
+    away = [resolved.frame(name).rapidity - middle for name in ("one", "other")]
+    assert away[0] == pytest.approx(-away[1], abs=1e-14)

@@ -21,18 +21,17 @@ from tauline.resolve.results import (
 )
 from tauline.scenario.diagnosis import Diagnosis, Severity
 from tauline.scenario.expression import evaluate, names_in
+from tauline.scenario.forms import names_base
 from tauline.scenario.objects import (
-    BASE,
     Broken,
     CoastLine,
     CompanionLine,
     DisplacedLine,
     Frame,
+    HalfwayFrame,
     Itinerary,
     Object,
     RestLine,
-    Value,
-    Velocity,
     Worldline,
     kind_of,
 )
@@ -45,6 +44,7 @@ from tauline.scenario.units import (
     Quantity,
     UnitSystem,
 )
+from tauline.scenario.values import BASE, Value, Velocity
 from tauline.spacetime import from_gamma, from_one_minus_beta
 from tauline.worldlines import Chain, Coast, ConstantAcceleration, Leg, legs_of
 from tauline.worldlines import Worldline as WorldlineCurve
@@ -158,7 +158,7 @@ class Context:
             return self.base
         owner, _, member = frame_id.partition(".")
         thing = self._object(owner, key, "frame")
-        if isinstance(thing, Frame) and not member:
+        if isinstance(thing, Frame | HalfwayFrame) and not member:
             return cast(FrameResult, self._value("object", owner, key))
         if isinstance(thing, LINES) and member:
             for frame in leg_frames(thing, self.path(owner, key), self.base.origin):
@@ -324,14 +324,8 @@ def proper_times_on(line: WorldlineCurve, points: Array) -> Array:
 def base_frame(objects: Mapping[str, Object]) -> FrameResult:
     """The base frame, under the name the scenario gives it."""
     for thing in objects.values():
-        if isinstance(thing, Frame) and is_base(thing):
+        if isinstance(thing, Frame) and names_base(thing):
             return FrameResult(
                 id=thing.id, label=thing.label or thing.id, rapidity=0.0, origin=np.zeros(2)
             )
     return FrameResult(id=BASE, label=BASE, rapidity=0.0, origin=np.zeros(2))
-
-
-def is_base(frame: Frame) -> bool:
-    """Whether a frame of the document names the base frame."""
-    given = (frame.velocity, frame.rapidity, frame.gamma, frame.one_minus_beta)
-    return frame.relative_to is None and all(value is None for value in given)

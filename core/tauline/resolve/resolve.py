@@ -9,7 +9,7 @@ from typing import Any, TypeVar, cast
 
 from tauline.resolve import events, light, lines, surfaces
 from tauline.resolve.broken import value_faults
-from tauline.resolve.context import LINES, Context, Line, base_frame, is_base, leg_frames
+from tauline.resolve.context import LINES, Context, Line, base_frame, leg_frames
 from tauline.resolve.memo import Fault, Memo, Node, Outcome, StaleMemo
 from tauline.resolve.placements import place_on_worldlines
 from tauline.resolve.results import (
@@ -27,10 +27,12 @@ from tauline.resolve.results import (
 )
 from tauline.scenario.diagnosis import Diagnosis, Severity
 from tauline.scenario.expression import evaluate_parameters
+from tauline.scenario.forms import names_base
 from tauline.scenario.objects import (
     Body,
     Broken,
     Frame,
+    HalfwayFrame,
     LightCone,
     Pulses,
     Signal,
@@ -111,7 +113,7 @@ def _build(context: Context, observers: dict[str, int], node: Node) -> object:
 
 
 def _frame(context: Context, thing: Frame) -> FrameResult:
-    if is_base(thing):
+    if names_base(thing):
         if thing.origin is not None:
             raise Fault("origin", "the base frame has its origin at t = 0, x = 0")
         return context.base
@@ -128,8 +130,24 @@ def _frame(context: Context, thing: Frame) -> FrameResult:
     )
 
 
+def _halfway_frame(context: Context, thing: HalfwayFrame) -> FrameResult:
+    """Rapidities along one line add, so the half-way one is their mean."""
+    first, second = (
+        context.frame(name, f"halfway[{number}]")
+        for number, name in enumerate(thing.halfway, start=1)
+    )
+    origin = first.origin if thing.origin is None else context.event(thing.origin, "origin").point
+    return FrameResult(
+        id=thing.id,
+        label=thing.label or thing.id,
+        rapidity=0.5 * (first.rapidity + second.rapidity),
+        origin=origin,
+    )
+
+
 BUILDERS: dict[type, Callable[[Context, Any], object]] = {
     Frame: _frame,
+    HalfwayFrame: _halfway_frame,
     Signal: light.signal,
     Pulses: light.pulses,
     Simultaneity: surfaces.simultaneity,

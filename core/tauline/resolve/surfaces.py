@@ -11,8 +11,9 @@ from tauline.resolve.results import (
     SimultaneityResult,
     ViewResult,
 )
-from tauline.scenario.objects import Body, LightCone, Simultaneity, Value, View
+from tauline.scenario.objects import Body, LightCone, Simultaneity, View
 from tauline.scenario.units import LENGTH, TIME, Dimension
+from tauline.scenario.values import Value
 
 WIDEST = 1e100
 """Farthest edge of a window: squares of places on its page must stay numbers."""

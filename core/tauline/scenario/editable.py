@@ -9,10 +9,11 @@ import msgspec
 
 from tauline.scenario.fields import FieldShape, Shape, fields_of_class
 from tauline.scenario.forms import FORMS, form_of, table_of
-from tauline.scenario.objects import Broken, Object, Value
+from tauline.scenario.objects import Broken, Object
 from tauline.scenario.paths import item, join
 from tauline.scenario.render import is_list_of_tables, literal
 from tauline.scenario.units import Dimension
+from tauline.scenario.values import Value
 
 FieldKind = Literal["quantity", "id", "ids", "text", "choice", "choices", "integer", "flag"]
 

@@ -13,7 +13,6 @@ from collections.abc import Callable, Mapping
 
 from tauline.errors import QuantityError
 from tauline.scenario.diagnosis import Diagnosis, Severity
-from tauline.scenario.objects import Value
 from tauline.scenario.scenario import Scenario
 from tauline.scenario.syntax import (
     FUNCTIONS,
@@ -38,6 +37,7 @@ from tauline.scenario.units import (
     Quantity,
     UnitSystem,
 )
+from tauline.scenario.values import Value
 
 CONSTANTS = {"pi": math.pi, "π": math.pi}
 

@@ -16,7 +16,6 @@ import msgspec
 from tauline.scenario.diagnosis import Diagnosis
 from tauline.scenario.fields import Shape, fields_of_class
 from tauline.scenario.objects import (
-    BASE,
     Body,
     Broken,
     ClockEvent,
@@ -27,6 +26,7 @@ from tauline.scenario.objects import (
     DisplacedLine,
     Frame,
     FrameTimeEvent,
+    HalfwayFrame,
     Itinerary,
     LightCone,
     MeetingEvent,
@@ -41,11 +41,12 @@ from tauline.scenario.objects import (
 )
 from tauline.scenario.paths import item, join
 from tauline.scenario.syntax import nearest
+from tauline.scenario.values import BASE
 
 ID = re.compile(r"[a-z][a-z0-9_-]*")
 
 FORMS: dict[str, tuple[tuple[type[msgspec.Struct], tuple[str, ...]], ...]] = {
-    "frame": ((Frame, ()),),
+    "frame": ((HalfwayFrame, ("halfway",)), (Frame, ())),
     "worldline": (
         (Itinerary, ("leg",)),
         (CoastLine, ("through",)),

@@ -5,7 +5,8 @@ from __future__ import annotations
 import msgspec
 
 from tauline.scenario.diagnosis import Diagnosis
-from tauline.scenario.objects import Broken, Object, Value
+from tauline.scenario.objects import Broken, Object
+from tauline.scenario.values import Value
 
 
 class Units(msgspec.Struct, frozen=True, kw_only=True):
