@@ -218,3 +218,16 @@ def test_every_mark_of_the_ruler_is_in_sight(courier: MainWindow) -> None:
     assert rail.width() > 600
     for sign in (-1.0, 1.0):
         assert 0.0 < rail.x_of(sign * math.atanh(0.999)) < rail.width()
+
+
+def test_labels_find_free_places_once_the_rail_stands(
+    courier: MainWindow, drag: Drag, qtbot: QtBot
+) -> None:
+    canvas = courier.canvas
+    drag_rail(courier, drag, 0.5)
+    dragged = canvas.drawing
+    qtbot.waitUntil(lambda: canvas.drawing is not dragged, timeout=3000)
+    assert canvas.drawing is not None
+    assert dragged is not None
+    assert canvas.drawing.window == dragged.window
+    assert not any(label.overlaps for label in canvas.drawing.labels)

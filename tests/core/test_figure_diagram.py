@@ -454,6 +454,23 @@ def test_labels_stay_where_they_are_when_nothing_moves() -> None:
     assert [label.offset for label in first.labels] == [label.offset for label in second.labels]
 
 
+def test_while_moving_labels_go_along_with_what_they_name() -> None:
+    resolved = shipped("courier")
+    before = drawn(resolved, seen_from(resolved, 0.0))
+    view = seen_from(resolved, 0.02, before.window)
+    moved = diagram(resolved, view, before.scale, EvenMeasure(), before, moving=True)
+    was = {(x.source, x.text): x for x in before.labels if x.role is Role.EVENT_LABEL}
+    for label in moved.labels:
+        old = was.get((label.source, label.text))
+        if old is not None and label.role is Role.EVENT_LABEL:
+            assert label.offset == pytest.approx(old.offset, abs=1e-9)
+    settled = diagram(resolved, view, before.scale, EvenMeasure(), moved)
+    assert sum(label.overlaps for label in settled.labels) == 0
+    assert [s.points.tolist() for s in strokes_of(settled, Role.WORLDLINE)] == [
+        s.points.tolist() for s in strokes_of(moved, Role.WORLDLINE)
+    ]
+
+
 def test_labels_are_one_line_of_signs_that_can_be_printed() -> None:
     text = 'tauline = 1\n[[event]]\nid = "a"\nlabel = "one\\ntwo\\u0007 three"\nt = 0\nx = 0\n'
     resolved = resolve(parse(text).scenario)

@@ -5,7 +5,7 @@ from __future__ import annotations
 from typing import Any
 
 import pyqtgraph as pg
-from PySide6.QtCore import QRectF, Qt, Signal
+from PySide6.QtCore import QRectF, Qt, QTimer, Signal
 from PySide6.QtGui import QKeyEvent, QPainter
 from PySide6.QtWidgets import QStyleOptionGraphicsItem, QWidget
 
@@ -19,6 +19,8 @@ from tauline_app.canvas.sheet import Sheet
 from tauline_app.session import Session
 from tauline_app.theme import qcolour
 
+SETTLING = 120
+"""Milliseconds after the last change of the view at which a motion counts as over."""
 ZOOM_STEP = 1.25
 PAN_STEP = 0.1
 
@@ -90,6 +92,12 @@ class Canvas(pg.GraphicsView):  # type: ignore[misc]
         self._session = session
         self._style = SCREEN_LIGHT
         self._following = False
+        # runs on after each change of the view; a change while it runs is part of a motion
+        self._motion = QTimer(self)
+        self._motion.setSingleShot(True)
+        self._motion.setInterval(SETTLING)
+        self._motion.timeout.connect(self._settle)
+        self._unsettled = False
         self.drawing: Drawing | None = None
         self.box = PointerBox()
         self.item = DiagramItem()
@@ -126,10 +134,16 @@ class Canvas(pg.GraphicsView):  # type: ignore[misc]
             )
         finally:
             self._following = False
-        self.redraw()
+        self.redraw(moving=self._motion.isActive())
+        self._motion.start()
 
-    def redraw(self) -> None:
-        """Make the drawing anew and paint it."""
+    def _settle(self) -> None:
+        """Once a motion is over, let the labels find free places again."""
+        if self._unsettled:
+            self.redraw()
+
+    def redraw(self, *, moving: bool = False) -> None:
+        """Make the drawing anew and paint it; while ``moving``, labels stay where they were."""
         shown = self.shown_window()
         if shown is None:
             return
@@ -142,7 +156,9 @@ class Canvas(pg.GraphicsView):  # type: ignore[misc]
             scale,
             ScreenMeasure(self._style),
             self.drawing,
+            moving=moving,
         )
+        self._unsettled = moving
         self.repaint_sheet()
 
     def repaint_sheet(self) -> None:

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Iterator, Mapping, Sequence
+from collections.abc import Callable, Iterator, Sequence
 from itertools import chain
 
 import numpy as np
@@ -20,7 +20,7 @@ from tauline.figure.candidates import BESIDE, along_line, around_point, beside
 from tauline.figure.caption import caption
 from tauline.figure.cover import Cover, segments_of
 from tauline.figure.drawing import Drawing, Fill, Label, Marker, Points, Role, Run, Stroke
-from tauline.figure.labels import Key, Placed, Request, leader_of, place_labels
+from tauline.figure.labels import Placed, Request, keep_labels, leader_of, place_labels
 from tauline.figure.measure import TextMeasure
 from tauline.figure.sheets import body_fills, light_cone_parts
 from tauline.figure.strokes import Scene
@@ -52,11 +52,14 @@ def diagram(
     scale: float,
     measure: TextMeasure,
     previous: Drawing | None = None,
+    *,
+    moving: bool = False,
 ) -> Drawing:
     """Draw a scenario.
 
     ``scale`` is the printed size, in points, of a diagram unit. ``previous`` is the drawing shown
-    before, if any: labels stay in their places where these are still free.
+    before, if any: labels stay in their places where these are still free. While ``moving`` they
+    stay in any case, which takes half the time; draw once more when the motion is over.
     """
     scene = Scene(resolved, view, scale)
     axes = [axis for frame in (view.frame, *view.axes) for axis in axes_of(scene, frame)]
@@ -71,7 +74,16 @@ def diagram(
     strokes += _lines(scene)
     markers = list(_markers(scene))
     texts = [text for axis in axes for text in axis_texts(scene, axis)]
-    labels, leaders, choices = _labels(scene, texts, strokes, markers, measure, previous)
+    requests = _requests(scene, texts, strokes, measure)
+    if moving and previous is not None:
+        placed = keep_labels(requests, previous.choices)
+    else:
+        placed = place_labels(
+            requests,
+            _cover(scene, strokes, markers),
+            previous.choices if previous is not None else None,
+        )
+    labels, leaders = _set(scene, placed)
     return Drawing(
         window=view.window,
         scale=scale,
@@ -81,7 +93,7 @@ def diagram(
         labels=labels,
         caption=caption(resolved, view) if "caption" in view.layers else (),
         title=one_line(resolved.scenario.title),
-        choices=choices,
+        choices={item.request.key: item.choice for item in placed},
     )
 
 
@@ -125,27 +137,27 @@ def _markers(scene: Scene) -> Iterator[Marker]:
             yield marker
 
 
-def _labels(
-    scene: Scene,
-    texts: Sequence[AxisText],
-    strokes: Sequence[Stroke],
-    markers: Sequence[Marker],
-    measure: TextMeasure,
-    previous: Drawing | None,
-) -> tuple[tuple[Label, ...], list[Stroke], Mapping[Key, int]]:
-    w = scene.window
-    corner = np.array([w.x0, w.t0])
+def _page_of(scene: Scene) -> _ToPage:
+    """How a place of the diagram becomes one on the page, in points."""
+    corner = np.array([scene.window.x0, scene.window.t0])
 
     def on_page(points: Points) -> Points:
         return np.asarray((points - corner) * scene.scale)
 
-    lines = [stroke for stroke in strokes if stroke.role in KEPT_OFF]
-    obstacles = segments_of(on_page(stroke.points) for stroke in lines)
-    dots = np.array([(*on_page(np.asarray(marker.at)), 3.5) for marker in markers]).reshape(-1, 3)
+    return on_page
+
+
+def _requests(
+    scene: Scene, texts: Sequence[AxisText], strokes: Sequence[Stroke], measure: TextMeasure
+) -> list[Request]:
+    """All labels to be placed, the least free to move first.
+
+    Numbers beside tilted lines come last: they can be spared.
+    """
+    on_page = _page_of(scene)
     titles = [text for text in texts if text.role is Role.AXIS_TITLE]
     own = [text for text in texts if text.role is Role.AXIS_NUMBER and text.primary]
     others = [text for text in texts if text.role is Role.AXIS_NUMBER and not text.primary]
-    # the least free to move first; numbers beside tilted lines come last: they can be spared
     requests = [*_axis_requests(titles, measure, on_page), *_axis_requests(own, measure, on_page)]
     if "labels" in scene.view.layers:
         requests += _event_requests(scene, measure, on_page)
@@ -153,17 +165,28 @@ def _labels(
     requests += _axis_requests(others, measure, on_page)
     if "clock_ticks" in scene.view.layers:
         requests += _clock_requests(scene, measure, on_page)
-    requests = _without_doubles(requests)
-    page = (w.width * scene.scale, w.height * scene.scale)
-    kept = previous.choices if previous is not None else None
-    placed = place_labels(requests, Cover(obstacles, dots, page), kept)
+    return _without_doubles(requests)
+
+
+def _cover(scene: Scene, strokes: Sequence[Stroke], markers: Sequence[Marker]) -> Cover:
+    """What labels keep off."""
+    w, on_page = scene.window, _page_of(scene)
+    lines = [stroke for stroke in strokes if stroke.role in KEPT_OFF]
+    obstacles = segments_of(on_page(stroke.points) for stroke in lines)
+    dots = np.array([(*on_page(np.asarray(marker.at)), 3.5) for marker in markers]).reshape(-1, 3)
+    return Cover(obstacles, dots, (w.width * scene.scale, w.height * scene.scale))
+
+
+def _set(scene: Scene, placed: Sequence[Placed]) -> tuple[tuple[Label, ...], list[Stroke]]:
+    """Labels as primitives, and the lines that lead to those that had to go far."""
+    corner = np.array([scene.window.x0, scene.window.t0])
     labels = tuple(_label(item, corner, scene.scale) for item in placed)
     leaders = [
         Stroke(source=item.request.source, role=Role.LEADER, points=ends / scene.scale + corner)
         for item in placed
         if (ends := leader_of(item)) is not None
     ]
-    return labels, leaders, {item.request.key: item.choice for item in placed}
+    return labels, leaders
 
 
 def _without_doubles(requests: Sequence[Request]) -> list[Request]:

@@ -106,6 +106,31 @@ def place_labels(
     return placed
 
 
+def keep_labels(requests: Sequence[Request], previous: Mapping[Key, int]) -> list[Placed]:
+    """Put labels where they were, without asking what they cover: for the frames of a motion.
+
+    One that had no place is left out if it is optional, else it takes the first.
+    """
+    placed = []
+    for request in requests:
+        choice = previous.get(request.key, -1)
+        if not 0 <= choice < len(request.boxes):
+            if request.optional:
+                continue
+            choice = 0
+        anchor = request.anchors if request.anchors.ndim == 1 else request.anchors[choice]
+        placed.append(
+            Placed(
+                request=request,
+                corner=request.boxes[choice],
+                anchor=anchor,
+                choice=choice,
+                cost=0.0,
+            )
+        )
+    return placed
+
+
 def leader_of(item: Placed) -> Array | None:
     """The line ``(2, 2)`` from the point a label names to where it stands, if that is far."""
     if not item.request.leads:

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Mapping
+from functools import cache
 
 import msgspec
 
@@ -39,6 +40,7 @@ class Flag(msgspec.Struct, frozen=True, kw_only=True):
     is_frame: bool
 
 
+@cache
 def ruler_marks() -> tuple[RulerMark, ...]:
     """The labelled places of the ruler, from left to right."""
     right = [RulerMark(float(from_beta(b)), f"{b:g}") for b in RULER_BETAS]
