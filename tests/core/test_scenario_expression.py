@@ -12,7 +12,8 @@ from hypothesis import strategies as st
 
 from tauline.errors import QuantityError
 from tauline.scenario.diagnosis import Severity
-from tauline.scenario.expression import evaluate, evaluate_parameters, names_in
+from tauline.scenario.expression import evaluate, names_in
+from tauline.scenario.parameters import evaluate_parameters
 from tauline.scenario.scenario import Parameter, Scenario
 from tauline.scenario.units import (
     ACCELERATION,

@@ -26,7 +26,6 @@ from tauline.resolve.results import (
     WorldlineResult,
 )
 from tauline.scenario.diagnosis import Diagnosis, Severity
-from tauline.scenario.expression import evaluate_parameters
 from tauline.scenario.forms import names_base
 from tauline.scenario.objects import (
     Body,
@@ -40,6 +39,7 @@ from tauline.scenario.objects import (
     View,
     Worldline,
 )
+from tauline.scenario.parameters import evaluate_parameters
 from tauline.scenario.scenario import Scenario
 from tauline.scenario.units import Quantity, UnitSystem
 

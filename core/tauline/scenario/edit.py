@@ -13,10 +13,10 @@ import msgspec
 
 from tauline.errors import TaulineError, UnknownIdError
 from tauline.scenario.editable import Field, fields_of, value_of
-from tauline.scenario.expression import fault_of_parameter_name
 from tauline.scenario.fields import fields_of_class
 from tauline.scenario.forms import ID, build, names_base, table_of
 from tauline.scenario.objects import Broken, Frame, Object, kind_of
+from tauline.scenario.parameters import fault_of_parameter_name
 from tauline.scenario.paths import split
 from tauline.scenario.references import owner_of, references, with_references
 from tauline.scenario.scenario import Parameter, Scenario

@@ -26,11 +26,11 @@ from tauline.scenario.values import (
     Named,
     NamedVelocity,
     PlaceId,
-    Side,
     Time,
     Velocity,
     WorldlineId,
 )
+from tauline.worldlines.protocol import Side
 
 # --- frames -----------------------------------------------------------------------------------
 

@@ -37,7 +37,6 @@ WorldlineId = Annotated[str, _id_of("worldline")]
 PlaceId = Annotated[str, _id_of("event", "worldline")]
 EventOrStart = Annotated[str, msgspec.Meta(extra={"refers_to": ("event",), "words": ("start",)})]
 
-Side = Literal["before", "after"]
 Direction = Literal["+x", "-x"]
 
 BASE = "base"
