@@ -1,5 +1,6 @@
 """Spacetime as array functions: light-cone coordinates, boosts, intervals, rapidities, Doppler."""
 
+from tauline.spacetime.aberration import aberrated_angle, doppler_factor_at
 from tauline.spacetime.boost import boost, boost_along, rotate
 from tauline.spacetime.doppler import doppler_factor, doppler_factor_between
 from tauline.spacetime.interval import (
@@ -22,6 +23,7 @@ from tauline.spacetime.rapidity import (
     gamma_minus_one,
     one_minus_beta,
 )
+from tauline.spacetime.rotation import thomas_rotation_per_turn, wigner_angle
 from tauline.spacetime.velocity import (
     compose,
     compose_collinear,
@@ -32,6 +34,7 @@ from tauline.spacetime.velocity import (
 
 __all__ = [
     "IntervalClass",
+    "aberrated_angle",
     "beta",
     "boost",
     "boost_along",
@@ -40,6 +43,7 @@ __all__ = [
     "compose",
     "compose_collinear",
     "doppler_factor",
+    "doppler_factor_at",
     "doppler_factor_between",
     "four_velocity",
     "from_beta",
@@ -57,5 +61,7 @@ __all__ = [
     "relative_rapidity",
     "relative_velocity",
     "rotate",
+    "thomas_rotation_per_turn",
     "to_lightcone",
+    "wigner_angle",
 ]
