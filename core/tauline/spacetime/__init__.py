@@ -1,6 +1,34 @@
 """Spacetime as array functions: light-cone coordinates, boosts, intervals, rapidities, Doppler."""
 
-from tauline.spacetime.aberration import aberrated_angle, doppler_factor_at
+from tauline.spacetime.aberration import (
+    aberrated_angle,
+    aberrated_direction,
+    aberration_shift,
+    doppler_factor_at,
+    doppler_factor_seen_at,
+)
+from tauline.spacetime.acceleration import (
+    accelerated_distance,
+    accelerated_gamma,
+    accelerated_rapidity,
+    accelerated_time,
+    clock_rate_ratio,
+    horizon_distance,
+    last_departure,
+    proper_time_over,
+    proper_time_to_gamma,
+    proper_time_to_rapidity,
+    proper_time_until,
+)
+from tauline.spacetime.appearance import (
+    angle_of_largest_apparent_speed,
+    apparent_length,
+    apparent_line_speed,
+    apparent_transverse_speed,
+    largest_apparent_speed,
+    least_rapidity_seen_at,
+    viewing_angles,
+)
 from tauline.spacetime.boost import boost, boost_along, rotate
 from tauline.spacetime.doppler import doppler_factor, doppler_factor_between
 from tauline.spacetime.interval import (
@@ -13,6 +41,13 @@ from tauline.spacetime.interval import (
     proper_time,
 )
 from tauline.spacetime.lightcone import from_lightcone, to_lightcone
+from tauline.spacetime.motion import (
+    circular_acceleration,
+    circular_period,
+    closing_speed,
+    from_proper_velocity,
+    proper_velocity,
+)
 from tauline.spacetime.rapidity import (
     beta,
     from_beta,
@@ -23,7 +58,12 @@ from tauline.spacetime.rapidity import (
     gamma_minus_one,
     one_minus_beta,
 )
-from tauline.spacetime.rotation import thomas_rotation_per_turn, wigner_angle
+from tauline.spacetime.rotation import (
+    BoostAndRotation,
+    successive_boosts,
+    thomas_rotation_per_turn,
+    wigner_angle,
+)
 from tauline.spacetime.velocity import (
     compose,
     compose_collinear,
@@ -33,35 +73,63 @@ from tauline.spacetime.velocity import (
 )
 
 __all__ = [
+    "BoostAndRotation",
     "IntervalClass",
     "aberrated_angle",
+    "aberrated_direction",
+    "aberration_shift",
+    "accelerated_distance",
+    "accelerated_gamma",
+    "accelerated_rapidity",
+    "accelerated_time",
+    "angle_of_largest_apparent_speed",
+    "apparent_length",
+    "apparent_line_speed",
+    "apparent_transverse_speed",
     "beta",
     "boost",
     "boost_along",
+    "circular_acceleration",
+    "circular_period",
     "classify",
     "classify_many",
+    "clock_rate_ratio",
+    "closing_speed",
     "compose",
     "compose_collinear",
     "doppler_factor",
     "doppler_factor_at",
     "doppler_factor_between",
+    "doppler_factor_seen_at",
     "four_velocity",
     "from_beta",
     "from_gamma",
     "from_gamma_minus_one",
     "from_lightcone",
     "from_one_minus_beta",
+    "from_proper_velocity",
     "gamma",
     "gamma_minus_one",
+    "horizon_distance",
     "interval_squared",
+    "largest_apparent_speed",
+    "last_departure",
+    "least_rapidity_seen_at",
     "one_minus_beta",
     "order",
     "proper_distance",
     "proper_time",
+    "proper_time_over",
+    "proper_time_to_gamma",
+    "proper_time_to_rapidity",
+    "proper_time_until",
+    "proper_velocity",
     "relative_rapidity",
     "relative_velocity",
     "rotate",
+    "successive_boosts",
     "thomas_rotation_per_turn",
     "to_lightcone",
+    "viewing_angles",
     "wigner_angle",
 ]
